@@ -3,6 +3,7 @@ package palette
 import (
 	"errors"
 	"fmt"
+	"maps"
 	"slices"
 	"strings"
 
@@ -135,12 +136,7 @@ func nearestKeyword(s string) string {
 }
 
 func keywords() []string {
-	names := make([]string, 0, len(namedColours))
-	for name := range namedColours {
-		names = append(names, name)
-	}
-	slices.Sort(names)
-	return names
+	return slices.Sorted(maps.Keys(namedColours))
 }
 
 // edits is the Levenshtein distance, by rows.

@@ -36,12 +36,12 @@ func DeltaE00Lab(p, q [3]float64) float64 {
 	c1, h1, c2, h2 := adjustedPolar(p, q)
 	dh, mean := hueStep(c1*c2 == 0, h1, h2)
 	dL, dC := q[0]-p[0], c2-c1
-	dH := 2 * math.Sqrt(c1*c2) * precision.Sin(dh/2*degree)
+	dH := 2 * math.Sqrt(c1*c2) * precision.Sin(float64(dh/2*degree))
 
-	l50 := (p[0]+q[0])/2 - 50
-	l50 *= l50
-	chroma := (c1 + c2) / 2
-	sL := 1 + 0.015*l50/math.Sqrt(20+l50)
+	l50 := float64((p[0]+q[0])/2) - 50
+	l50 = float64(l50 * l50)
+	chroma := float64((c1 + c2) / 2)
+	sL := 1 + float64(0.015*l50)/math.Sqrt(20+l50)
 	sC := math.FMA(0.045, chroma, 1)
 	sH := math.FMA(0.015*chroma, hueWeight(mean), 1)
 
@@ -55,7 +55,7 @@ func DeltaE00Lab(p, q [3]float64) float64 {
 func adjustedPolar(p, q [3]float64) (c1, h1, c2, h2 float64) {
 	r1, _ := unpolar(p[1], p[2])
 	r2, _ := unpolar(q[1], q[2])
-	stretch := 1 + (1-math.Sqrt(chroma7((r1+r2)/2)))/2
+	stretch := 1 + float64((1-math.Sqrt(chroma7((r1+r2)/2)))/2)
 	c1, h1 = unpolar(stretch*p[1], p[2])
 	c2, h2 = unpolar(stretch*q[1], q[2])
 	return c1, h1, c2, h2
@@ -63,8 +63,8 @@ func adjustedPolar(p, q [3]float64) (c1, h1, c2, h2 float64) {
 
 // chroma7 is c⁷/(c⁷+25⁷).
 func chroma7(c float64) float64 {
-	c7 := c * c * c * c * c * c * c
-	return c7 / (c7 + 6103515625)
+	c6 := c * c * c * c * c * c
+	return c6 * c / math.FMA(c6, c, 6103515625)
 }
 
 // hueStep gives the signed hue difference and the mean hue. Opposite hues
@@ -74,7 +74,7 @@ func hueStep(grey bool, h1, h2 float64) (step, mean float64) {
 	if grey {
 		return 0, h1 + h2
 	}
-	step, mean = h2-h1, (h1+h2)/2
+	step, mean = h2-h1, float64((h1+h2)/2)
 	const opposite = 180 + 1e-9
 	switch {
 	case math.Abs(step) <= opposite:
@@ -92,15 +92,15 @@ func hueStep(grey bool, h1, h2 float64) (step, mean float64) {
 
 // hueWeight is T of the definition, the mean hue in degrees.
 func hueWeight(mean float64) float64 {
-	t := math.FMA(-0.17, precision.Cos((mean-30)*degree), 1)
-	t = math.FMA(0.24, precision.Cos(2*mean*degree), t)
-	t = math.FMA(0.32, precision.Cos(math.FMA(3, mean, 6)*degree), t)
-	return math.FMA(-0.20, precision.Cos(math.FMA(4, mean, -63)*degree), t)
+	t := math.FMA(-0.17, precision.Cos(float64((mean-30)*degree)), 1)
+	t = math.FMA(0.24, precision.Cos(float64(2*mean*degree)), t)
+	t = math.FMA(0.32, precision.Cos(float64(math.FMA(3, mean, 6)*degree)), t)
+	return math.FMA(-0.20, precision.Cos(float64(math.FMA(4, mean, -63)*degree)), t)
 }
 
 // rotation is R_T of the definition, which turns the ellipses of blue.
 func rotation(chroma, mean float64) float64 {
 	u := (mean - 275) / 25
-	theta := 30 * precision.Exp(-u*u)
-	return -2 * math.Sqrt(chroma7(chroma)) * precision.Sin(2*theta*degree)
+	theta := 30 * precision.Exp(float64(-u*u))
+	return -2 * math.Sqrt(chroma7(chroma)) * precision.Sin(float64(2*theta*degree))
 }
