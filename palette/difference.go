@@ -101,6 +101,6 @@ func hueWeight(mean float64) float64 {
 // rotation is R_T of the definition, which turns the ellipses of blue.
 func rotation(chroma, mean float64) float64 {
 	u := (mean - 275) / 25
-	theta := 30 * precision.Exp(float64(-u*u))
+	theta := float64(30 * precision.Exp(float64(-u*u))) // doubled below, which compiles as a sum
 	return -2 * math.Sqrt(chroma7(chroma)) * precision.Sin(float64(2*theta*degree))
 }
