@@ -1,0 +1,230 @@
+package kernel
+
+import (
+	"math/cmplx"
+	"math/rand/v2"
+	"testing"
+)
+
+// Samples are Inside by the theorem of Fatou (1919): an attracting cycle draws
+// the critical orbit to it, which then never escapes. A false claim would show
+// under direct iteration, sooner or later: near a cusp at distance ε the orbit
+// slips through in about π/√ε iterations (Boll's observation of 1991 at the
+// neck and the cusp; Aaron Klebanoff, π in the Mandelbrot set, 2001), so the
+// iterations below see everything that lies 1e-8 outside, at least.
+
+// TestCusps claims nothing outside, close to cusps and at the neck of -3/4
+// where orbits linger.
+func TestCusps(t *testing.T) {
+	limit, points := 100000, 1000
+	if testing.Short() {
+		limit, points = 20000, 300
+	}
+	places := []struct {
+		name string
+		at   complex128
+	}{
+		{"1/4", 0.25}, {"neck", -0.75}, {"-5/4", -1.25}, {"period 3", -1.75}, {"1/3", complex(-0.125, 0.649519052838329)},
+		{"nothing", complex(0.3, 0.02)},
+	}
+	total := 0
+	for _, v := range places {
+		s := whole(t, 5000)
+		r := rand.New(rand.NewPCG(20, 20))
+		var inside, undecided int
+		for range points {
+			c := v.at + cmplx.Rect(powerOfTen(-6*r.Float64()-1), 6.283185307179586*r.Float64())
+			if s.kernel.loops.interior(real(c), imag(c)) {
+				continue
+			}
+			d := directLane{zr: real(c), zi: imag(c), cr: real(c), ci: imag(c), add: 1, gr: 1, w: 1, n: 1}
+			switch s.kernel.runDirect(&d) {
+			case Inside:
+				inside++
+				if n := escapes(c, 2, limit); n > 0 {
+					t.Errorf("%s: %v escapes at %d, yet is Inside", v.name, c, n)
+				}
+			case Undecided:
+				undecided++
+			}
+		}
+		t.Logf("%-8s %d inside, %d undecided", v.name, inside, undecided)
+		total += inside
+	}
+	if total < points {
+		t.Errorf("only %d points were claimed to lie inside", total)
+	}
+}
+
+func powerOfTen(x float64) float64 { return real(cmplx.Pow(10, complex(x, 0))) }
+
+// escapes iterates in doubles, sharing nothing with the kernel: the index at
+// which the orbit of c leaves |z| <= 4, 0 if it does not.
+func escapes(c complex128, power, limit int) int {
+	z := c
+	for n := 1; n <= limit; n++ {
+		if real(z)*real(z)+imag(z)*imag(z) > 16 {
+			return n
+		}
+		if power == 2 {
+			z = z*z + c
+		} else {
+			z = z*z*z + c
+		}
+	}
+	return 0
+}
+
+// TestWholeSets: on a grid over the whole set, power 2 and 3, nothing Inside
+// escapes, and of the points that direct iteration cannot get rid of most are
+// found to be inside.
+func TestWholeSets(t *testing.T) {
+	grid := 120
+	if testing.Short() {
+		grid = 40
+	}
+	for _, power := range []int{2, 3} {
+		s := scene{name: "whole", height: "4", width: 1 << 12, rows: 1 << 12, power: power, limit: 5000}
+		s.build(t)
+		var inside, bounded int
+		for y := range grid {
+			for x := range grid {
+				c := complex(4*(float64(x)+0.31)/float64(grid)-2, 4*(float64(y)+0.47)/float64(grid)-2)
+				f := s.kernel.Sample(s.lattice(c))
+				n := escapes(c, power, 20000)
+				if n == 0 {
+					bounded++
+				}
+				if f.State == Inside {
+					inside++
+					if n > 0 {
+						t.Errorf("power %d: %v escapes at %d, yet is Inside", power, c, n)
+					}
+				}
+			}
+		}
+		t.Logf("power %d: %d of %d bounded points found", power, inside, bounded)
+		if inside*100 < bounded*97 || bounded < grid*grid/20 {
+			t.Errorf("power %d: %d of %d bounded points found", power, inside, bounded)
+		}
+	}
+}
+
+// TestCopies: small copies of the set at depth. All points claimed to be inside
+// stay bounded under direct iteration at full precision; and of the points left
+// over when the limit is reached, which is where time goes, few are inside.
+func TestCopies(t *testing.T) {
+	checks, samples := 4, 1500
+	if testing.Short() {
+		checks, samples = 1, 500
+	}
+	tip30, tip100, deepest := tipSet(t, 26), tipSet(t, 90), tipSet(t, 280)
+	tip30.limit, tip100.limit, deepest.limit = 30000, 30000, 30000
+	minibrot := tinySet(t)
+	for _, v := range []struct {
+		scene
+		share int // per cent of bounded samples that must be proved inside
+	}{{tip30, 95}, {tip100, 90}, {deepest, 80}, {minibrot, 65}} {
+		s := v.build(t)
+		var inside, undecided int
+		for i, p := range s.spread(samples, 21) {
+			// the middle of the view, where the copy is
+			x, y := s.kernel.cfg.View.MidX+(p[0]-24)/1.5, s.kernel.cfg.View.MidY+(p[1]-16)/1.5
+			switch s.kernel.Sample(x, y).State {
+			case Inside:
+				inside++
+				if inside <= checks {
+					if e := s.exactTo(t, x, y, 2*s.limit); e.Escaped {
+						t.Errorf("%s, sample %d: Inside, yet escapes at %d", s.name, i, e.N)
+					}
+				}
+			case Undecided:
+				undecided++
+			}
+		}
+		t.Logf("%-20s %-6s %d inside, %d undecided", s.name, s.regime(), inside, undecided)
+		if inside*100 < v.share*(inside+undecided) || inside < samples/50 {
+			t.Errorf("%s: of %d bounded samples only %d are proved inside", s.name, inside+undecided, inside)
+		}
+	}
+}
+
+// TestTraps: filled Julia sets of parameters with attracting cycles of several
+// periods (centres and near-centres of hyperbolic components; from memory and
+// by the multipliers computed here). Nothing that a trap holds escapes, and
+// most of the filled set is found.
+func TestTraps(t *testing.T) {
+	samples := 2000
+	if testing.Short() {
+		samples = 400
+	}
+	for _, v := range []struct {
+		power  int
+		re, im string
+		period int
+	}{
+		{2, "-0.1", "0.2", 1}, {2, "0.2", "0", 1}, {2, "-1", "0", 2}, {2, "-1.05", "0.1", 2},
+		{2, "-0.122561166876654", "0.744861766619744", 3}, {2, "-1.7549", "0", 3},
+		{2, "-0.504340175446244", "0.562765761452982", 5}, {3, "0.2", "0.1", 1}, {3, "0.1", "1.02", 2},
+	} {
+		s := scene{name: v.re + " + " + v.im + "i", height: "3", power: v.power, julia: true,
+			paramRe: v.re, paramIm: v.im, limit: 5000}
+		s.build(t)
+		if len(s.kernel.traps) != v.period {
+			t.Errorf("z^%d + %s: %d traps, period %d", v.power, s.name, len(s.kernel.traps), v.period)
+		}
+		var inside, undecided int
+		for _, p := range s.spread(samples, 22) {
+			switch f := s.kernel.Sample(p[0], p[1]); f.State {
+			case Inside:
+				inside++
+				if inside%40 == 1 {
+					if e := s.exactTo(t, p[0], p[1], 5000); e.Escaped {
+						t.Errorf("%s %v: trapped, yet escapes at %d", s.name, p, e.N)
+					}
+				}
+			case Undecided:
+				undecided++
+			}
+		}
+		t.Logf("z^%d + %s: %d inside, %d undecided", v.power, s.name, inside, undecided)
+		if undecided*50 > inside || inside < samples/400 {
+			t.Errorf("%s: %d inside, %d undecided", s.name, inside, undecided)
+		}
+	}
+}
+
+// TestNoTraps: parameters without an attracting cycle get no trap: outside the
+// set, at a parabolic one (1/4), at dendrites (i and -2).
+func TestNoTraps(t *testing.T) {
+	for _, c := range [][2]string{{"0.4", "0.5"}, {"0.25", "0"}, {"0", "1"}, {"-2", "0"}, {"-0.75", "0"}} {
+		s := scene{height: "3", julia: true, paramRe: c[0], paramIm: c[1], limit: 500}
+		if s.build(t); len(s.kernel.traps) != 0 {
+			t.Errorf("c = %s + %si has no attracting cycle, but %d traps", c[0], c[1], len(s.kernel.traps))
+		}
+	}
+}
+
+// TestJuliaTrapsDeep: a trap works below a reference, too: the filled Julia set
+// of -1 around its repelling fixed point (1-√5)/2, at depth.
+func TestJuliaTrapsDeep(t *testing.T) {
+	const alpha = "-0.61803398874989484820458683436563811772030917980576286213544862270526046281890244970720720418939113748475408807538689175212663386222353693179318006076672635443338908659593958290563832266131992829026788067520876689250171169620703222104321626954862629631361443814975870122034080588795445474924618569536486444924104432077134494704956584678850987433944221254487706647809158846074998871240076521705751797883416625624940758906970400028121042762177111777805315317141011704666599146697987317613560067087480710131795236894275219484353056783002287856997829778347845878228911097625003026961561700250464338243776486102838312683303724292675263116533924731671112115881863851331620384005222165791286675294654906811317159934323597349498509040947621322298101726107059611645629909816290555208524790352406020172799747175342777592778625619432082750513121815628551222480939471234145170223735805772786160086883829523045926478780178899219902707769038953219681986151437803149974110692608867429622675756052317277752035361393621"
+	for height, limit := range map[string]int{"1e-30": 1000, "1e-340": 6000} {
+		s := (&scene{name: "basilica " + height, re: alpha, height: height, julia: true, paramRe: "-1", limit: limit}).build(t)
+		var n [3]int
+		for _, p := range s.spread(300, 23) {
+			f := s.kernel.Sample(p[0], p[1])
+			n[f.State]++
+			if n[f.State] > 12 {
+				continue // direct iteration of all would take long
+			}
+			if e := s.exact(t, p[0], p[1]); e.Escaped != (f.State == Escaped) {
+				t.Errorf("%s %v: %v, but escaped = %v by direct iteration", s.name, p, f.State, e.Escaped)
+			}
+		}
+		t.Logf("%s: %d escaped, %d inside, %d undecided", s.name, n[Escaped], n[Inside], n[Undecided])
+		if n[Escaped] < 50 || n[Inside] < 50 || n[Undecided] > 5 {
+			t.Errorf("%s: %d escaped, %d inside, %d undecided", s.name, n[Escaped], n[Inside], n[Undecided])
+		}
+	}
+}

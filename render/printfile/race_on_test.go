@@ -1,0 +1,5 @@
+//go:build race
+
+package printfile
+
+const raceEnabled = true
