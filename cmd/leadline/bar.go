@@ -1,0 +1,61 @@
+package main
+
+import (
+	"fmt"
+	"strings"
+	"time"
+
+	"leadline/render"
+)
+
+const (
+	barMost  = 28 // characters of the line at its longest
+	barLeast = 6  // and at its shortest, before it is left out
+)
+
+// barLine draws progress in fewer than columns characters: a lead that goes
+// out along its line. Where there is little room the line gives way first, the
+// rate next, and then the time left.
+func barLine(p render.Progress, spent time.Duration, columns int, plain bool) string {
+	share := float64(p.Done) / float64(max(p.Total, 1))
+	parts := []string{fmt.Sprintf("%-9s", p.Phase), fmt.Sprintf("%3d %%", int(share*100))}
+	if perSecond, left := rate(p, spent); left >= 0 && unitOf(p.Phase) != "" {
+		parts = append(parts, clock(left)+" left", quantity(perSecond, unitOf(p.Phase))+"/s")
+	}
+	text := strings.Join(parts, "  ")
+	for len(text) >= columns && len(parts) > 1 {
+		parts = parts[:len(parts)-1]
+		text = strings.Join(parts, "  ")
+	}
+	if len(text) >= columns {
+		return text[:max(0, columns-1)]
+	}
+	width := min(barMost, columns-1-len(text)-3) // two blanks and the lead
+	if width < barLeast {
+		return text
+	}
+	return parts[0] + " " + leadAt(share, width, plain) + " " + strings.Join(parts[1:], "  ")
+}
+
+// leadAt is the line itself, width characters and the lead.
+func leadAt(share float64, width int, plain bool) string {
+	paid, lead, free := "─", "●", "·"
+	if plain {
+		paid, lead, free = "-", "o", "."
+	}
+	at := min(int(share*float64(width)), width)
+	return strings.Repeat(paid, at) + lead + strings.Repeat(free, width-at)
+}
+
+// unitOf is what a phase counts; "" for one that is done at a stroke.
+func unitOf(phase string) string {
+	switch phase {
+	case render.PhasePixels:
+		return "pixels"
+	case render.PhaseReference:
+		return "steps"
+	case render.PhaseSurvey, render.PhaseAudit:
+		return "samples"
+	}
+	return ""
+}
