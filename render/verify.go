@@ -164,7 +164,6 @@ type verifier struct {
 	e    *Evidence
 	o    Options
 	rect image.Rectangle
-	k    int
 }
 
 // whole renders everything again, comparing rows with the file as they come

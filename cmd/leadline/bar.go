@@ -14,13 +14,16 @@ const (
 )
 
 // barLine draws progress in fewer than columns characters: a lead that goes
-// out along its line. Where there is little room the line gives way first, the
-// rate next, and then the time left.
+// out along its line. Where there is little room the rate gives way, then the time
+// left; the line takes what remains.
 func barLine(p render.Progress, spent time.Duration, columns int, plain bool) string {
 	share := float64(p.Done) / float64(max(p.Total, 1))
 	parts := []string{fmt.Sprintf("%-9s", p.Phase), fmt.Sprintf("%3d %%", int(share*100))}
-	if perSecond, left := rate(p, spent); left >= 0 && unitOf(p.Phase) != "" {
+	switch perSecond, left := rate(p, spent); {
+	case left >= 0 && unitOf(p.Phase) != "":
 		parts = append(parts, clock(left)+" left", quantity(perSecond, unitOf(p.Phase))+"/s")
+	case spent >= 2*time.Second:
+		parts = append(parts, clock(spent.Truncate(time.Second).Seconds())+" so far")
 	}
 	text := strings.Join(parts, "  ")
 	for len(text) >= columns && len(parts) > 1 {
@@ -30,7 +33,7 @@ func barLine(p render.Progress, spent time.Duration, columns int, plain bool) st
 	if len(text) >= columns {
 		return text[:max(0, columns-1)]
 	}
-	width := min(barMost, columns-1-len(text)-3) // two blanks and the lead
+	width := min(barMost, columns-1-len(text)-1) // beside the lead itself
 	if width < barLeast {
 		return text
 	}

@@ -13,7 +13,7 @@ var shells = []string{"bash", "zsh", "fish", "powershell"}
 func completionCommand() *cobra.Command {
 	return &cobra.Command{
 		Use: "completion SHELL", Short: "let the shell complete commands, flags and files",
-		Long: `Prints a script for ` + strings.Join(shells, ", ") + ` that lets the Tab key complete
+		Long: `Prints a script for bash, zsh, fish or powershell that lets the Tab key complete
 leadline's commands and flags, and offers only such files as a command reads.`,
 		Example: `  source <(leadline completion bash)       for this bash session
   source <(leadline completion zsh)        for this zsh session

@@ -8,13 +8,9 @@ import (
 )
 
 const exitHelp = `
-Exit codes
-  0    done
-  1    failed
-  2    called wrongly
-  3    bad frame
-  4    does not match
-  130  interrupted
+Results go to standard output, talk to standard error. Exit codes:
+  0 done      2 called wrongly    4 does not match
+  1 failed    3 bad frame         130 interrupted
 `
 
 // helpWidth is the width help is set for, the usual terminal's.
@@ -22,30 +18,37 @@ const helpWidth = 80
 
 // showHelp prints a command's help.
 func showHelp(cmd *cobra.Command, _ []string) {
-	var b strings.Builder
-	b.WriteString(strings.TrimSpace(cmd.Long) + "\n\nUsage\n  ")
+	text := strings.TrimSpace(cmd.Long) + "\n"
 	if cmd.HasParent() {
-		b.WriteString(cmd.Parent().CommandPath() + " " + cmd.Use + "\n")
-	} else {
-		b.WriteString("leadline COMMAND\n")
+		text += "\nUsage\n  " + cmd.Parent().CommandPath() + " " + cmd.Use + "\n"
 	}
 	if cmd.HasExample() {
-		b.WriteString("\nExamples\n" + cmd.Example + "\n")
-	}
-	if cmd.HasAvailableSubCommands() {
-		b.WriteString("\nCommands\n")
-		for _, c := range cmd.Commands() {
-			if c.IsAvailableCommand() || c.Name() == "help" {
-				fmt.Fprintf(&b, "  %-11s %s\n", c.Name(), c.Short)
-			}
-		}
+		text += "\nExamples\n" + cmd.Example + "\n"
 	}
 	if cmd.HasParent() {
-		b.WriteString("\nFlags\n" + cmd.LocalFlags().FlagUsagesWrapped(helpWidth))
+		text += "\nFlags\n" + cmd.LocalFlags().FlagUsagesWrapped(helpWidth)
 	} else {
-		b.WriteString(exitHelp)
+		text += commandList(cmd) + exitHelp
 	}
-	fmt.Fprint(cmd.OutOrStdout(), b.String())
+	fmt.Fprint(cmd.OutOrStdout(), text)
+}
+
+func commandList(root *cobra.Command) string {
+	text := "\nCommands (leadline help COMMAND says more)\n"
+	for _, c := range root.Commands() {
+		if c.IsAvailableCommand() || c.Name() == "help" {
+			text += fmt.Sprintf("  %-11s %s\n", c.Name(), c.Short)
+		}
+	}
+	return text
+}
+
+// addHelpFlag gives a command and all below it the flag in our words.
+func addHelpFlag(c *cobra.Command) {
+	c.Flags().BoolP("help", "h", false, "print this help")
+	for _, sub := range c.Commands() {
+		addHelpFlag(sub)
+	}
 }
 
 func helpCommand() *cobra.Command {
@@ -58,7 +61,6 @@ func helpCommand() *cobra.Command {
 			if err != nil || len(rest) > 0 {
 				return unknownCommand(cmd.Root(), args[0])
 			}
-			about.InitDefaultHelpFlag() // so that it is listed
 			return about.Help()
 		},
 	}

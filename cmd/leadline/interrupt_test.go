@@ -13,6 +13,7 @@ import (
 // TestKillLeavesNoPrint ends a render as a power cut would: nothing is under
 // the final names, and the next print of that name clears up and succeeds.
 func TestKillLeavesNoPrint(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	p := startPrint(t, dir, "slow.frame.json")
 	p.signal(syscall.SIGKILL)
@@ -32,6 +33,7 @@ func TestKillLeavesNoPrint(t *testing.T) {
 // TestKillSparesThePrintUnderWay runs two prints of one name: the second must
 // not take the first one's part for stale.
 func TestKillSparesThePrintUnderWay(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	p := startPrint(t, dir, "slow.frame.json")
 	command(t, dir, "render", testdata(t, "small.frame.json"), "--out", "tide.png")
@@ -47,6 +49,7 @@ func TestKillSparesThePrintUnderWay(t *testing.T) {
 // TestFirstSignalStopsCleanly sends each polite signal once, to a first print
 // and to a second of the same name.
 func TestFirstSignalStopsCleanly(t *testing.T) {
+	t.Parallel()
 	for _, s := range []syscall.Signal{syscall.SIGINT, syscall.SIGTERM} {
 		t.Run(s.String(), func(t *testing.T) {
 			dir := t.TempDir()
@@ -81,6 +84,7 @@ func interruptOnce(t *testing.T, dir string, s syscall.Signal, want string) {
 // TestSecondSignalStopsAtOnce interrupts twice while single pixels take
 // seconds. The hidden part stays, which tells a hard end from a clean one.
 func TestSecondSignalStopsAtOnce(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	p := startPrint(t, dir, "slowest.frame.json")
 	p.signal(syscall.SIGINT)
@@ -103,6 +107,7 @@ func TestSecondSignalStopsAtOnce(t *testing.T) {
 
 // TestInterruptOfOthers interrupts verify, which says no more than it knows.
 func TestInterruptOfOthers(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	command(t, dir, "render", testdata(t, "slow.frame.json"), "--out", "part.png", "--crop", "0,0,40,30", "--audit", "0")
 	before := contents(t, dir)

@@ -19,7 +19,7 @@ var progressKinds = []string{"auto", "bar", "json", "none"}
 
 // progressFlag adds --progress to a command.
 func progressFlag(c *cobra.Command, kind *string) {
-	c.Flags().StringVar(kind, "progress", "auto", "show progress on standard error: `auto`, bar, json or none")
+	c.Flags().StringVar(kind, "progress", "auto", "show progress on standard error, in this `FORM`: auto, bar, json or none")
 	completeFlag(c, "progress", progressKinds...)
 }
 
@@ -29,6 +29,7 @@ type meter struct {
 	w     io.Writer
 	kind  string
 	plain bool // the terminal shows no more than ASCII
+	done  chan struct{}
 
 	mu     sync.Mutex
 	phase  string
@@ -50,7 +51,30 @@ func newMeter(w io.Writer, kind string) (*meter, error) {
 	default:
 		return nil, usage(fmt.Errorf("--progress %q is not known", kind), "one of "+strings.Join(progressKinds, ", "))
 	}
-	return &meter{w: w, kind: kind, plain: !speaksUTF8()}, nil
+	m := &meter{w: w, kind: kind, plain: !speaksUTF8(), done: make(chan struct{})}
+	if kind == "bar" {
+		go m.tick()
+	}
+	return m, nil
+}
+
+// tick redraws the bar every second: a deep tile may take minutes, and the
+// time must be seen to pass.
+func (m *meter) tick() {
+	t := time.NewTicker(time.Second)
+	defer t.Stop()
+	for {
+		select {
+		case <-m.done:
+			return
+		case now := <-t.C:
+			m.mu.Lock()
+			if m.shown && now.Sub(m.last) >= time.Second {
+				m.bar(m.latest, now.Sub(m.began))
+			}
+			m.mu.Unlock()
+		}
+	}
 }
 
 func isTerminal(w io.Writer) bool {
@@ -142,8 +166,9 @@ func (m *meter) columns() int {
 	return 80
 }
 
-// end takes the bar away.
+// end takes the bar away. It is called once.
 func (m *meter) end() {
+	close(m.done)
 	m.mu.Lock()
 	defer m.mu.Unlock()
 	if m.shown {

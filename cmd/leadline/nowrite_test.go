@@ -14,6 +14,7 @@ import (
 // TestFolderNotWritable renders into a folder that may only be read, as a user
 // without privileges.
 func TestFolderNotWritable(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	for _, d := range []string{filepath.Dir(dir), filepath.Dir(executable(t))} {
 		if err := os.Chmod(d, 0o755); err != nil { // made for this process alone

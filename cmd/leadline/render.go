@@ -34,11 +34,11 @@ their names only when they are whole; an interrupted render leaves neither.`,
 	}
 	f := c.Flags()
 	f.SortFlags = false
-	f.StringVarP(&g.out, "out", "o", "", "write this `PNG`, and its sidecar beside it (by default named after the frame, in the current folder)")
-	f.StringVar(&g.crop, "crop", "", "only these pixels: `X,Y,W,H` counted from the trim's top left")
-	f.StringVar(&g.scale, "scale", "1", "at a whole fraction of the size, `1/k`")
-	f.IntVar(&g.audit, "audit", 32, "audit this `number` of random pixels")
-	f.IntVar(&g.workers, "workers", 0, "compute on this `number` of cores (by default all); no pixel depends on it")
+	f.StringVarP(&g.out, "out", "o", "", "write this `PNG` and its sidecar (by default named after the frame, in the current folder)")
+	f.StringVar(&g.crop, "crop", "", "only the part `X,Y,W,H`, in pixels from the trim's top left")
+	f.StringVar(&g.scale, "scale", "1", "at `1/k` of the size, k a whole number")
+	f.IntVar(&g.audit, "audit", 32, "audit `N` random pixels")
+	f.IntVar(&g.workers, "workers", 0, "compute on `N` cores (by default all); no pixel depends on it")
 	f.BoolVar(&g.json, "json", false, "end with one line of JSON instead of words")
 	progressFlag(c, &g.progress)
 	completePNG(c, "out")

@@ -14,13 +14,11 @@ import (
 
 const rootHelp = `leadline makes large 16-bit prints of escape-time sets (the Mandelbrot set and
 its relatives) at any depth, each with a sidecar from which anybody can make the
-very same pixels again.
+very same pixels again.`
 
-Results go to standard output, talk to standard error.`
-
-const rootExample = `  leadline render tide.frame.json               the whole sheet, and its sidecar
-  leadline render tide.frame.json --scale 1/8   a quick look at an eighth of the size
-  leadline verify tide.png                      is every pixel what the frame says?`
+const rootExample = `  leadline render tide.frame.json              the whole sheet and its sidecar
+  leadline render tide.frame.json --scale 1/8  a look at an eighth of the size
+  leadline verify tide.png                     is it what the frame says?`
 
 // newRoot builds the command tree.
 func newRoot(stdout, stderr io.Writer) *cobra.Command {
@@ -40,9 +38,11 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	root.SetVersionTemplate("leadline {{.Version}}\n")
 	root.SetFlagErrorFunc(flagError)
 	root.SetHelpFunc(showHelp)
-	root.SetHelpCommand(helpCommand())
+	help := helpCommand()
+	root.SetHelpCommand(help)
 	root.CompletionOptions.DisableDefaultCmd = true // we have our own
-	root.AddCommand(renderCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand())
+	root.AddCommand(renderCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help)
+	addHelpFlag(root)
 	return root
 }
 

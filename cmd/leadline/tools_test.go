@@ -34,6 +34,7 @@ func tool(t *testing.T, debian, name string, args ...string) string {
 // TestOutsideTools gives a print as the command leaves it to programs that
 // others wrote.
 func TestOutsideTools(t *testing.T) {
+	t.Parallel()
 	dir := t.TempDir()
 	r, p := rendered(t, dir, testdata(t, "small.frame.json"), "tide.png")
 	png, sidecar := filepath.Join(dir, "tide.png"), filepath.Join(dir, "tide.sidecar.json")

@@ -36,9 +36,9 @@ that the file is damaged or no print at all.`,
 	f := c.Flags()
 	f.SortFlags = false
 	f.BoolVar(&g.whole, "whole", false, "compare everything (done unless --sample is given)")
-	f.IntVar(&g.sample, "sample", 0, "compare this `number` of random tiles of 64 x 64 pixels")
-	f.Uint64Var(&g.seed, "seed", 0, "the `number` that picks the tiles (by default drawn anew, and printed)")
-	f.IntVar(&g.workers, "workers", 0, "compute on this `number` of cores (by default all)")
+	f.IntVar(&g.sample, "sample", 0, "compare `N` random tiles of 64 x 64 pixels")
+	f.Uint64Var(&g.seed, "seed", 0, "`N` picks the tiles (by default drawn anew, and printed)")
+	f.IntVar(&g.workers, "workers", 0, "compute on `N` cores (by default all)")
 	f.BoolVar(&g.json, "json", false, "one line of JSON instead of words")
 	progressFlag(c, &g.progress)
 	for _, flag := range []string{"sample", "seed", "workers"} {

@@ -33,6 +33,7 @@ func rendered(t *testing.T, dir, frame, out string, args ...string) (render.Resu
 // TestSamePixels renders with 1, 2 and 7 workers and in parts: the pixels, and
 // for the whole the bytes of the file too, do not depend on either.
 func TestSamePixels(t *testing.T) {
+	t.Parallel()
 	dir, frame := t.TempDir(), testdata(t, "small.frame.json")
 	one, whole := rendered(t, dir, frame, "one.png", "--workers", "1")
 	for _, n := range []int{2, 7} {
@@ -65,6 +66,7 @@ const wide = `{"format": "leadline.frame/1", "set": {"kind": "mandelbrot"},
 // sheets of any height: memory holds a few bands, so that 256 rows, four bands
 // and more, take what 40 000 take.
 func TestMemory(t *testing.T) {
+	t.Parallel()
 	if testing.Short() {
 		t.Skip("renders 15 million pixels")
 	}

@@ -7,13 +7,15 @@ import (
 
 // views are places at several depths, each with what makes it hard.
 func views(t testing.TB) []scene {
+	aside := tipSet(t, 280, 0.3) // the centre's own orbit passes 0 at 1e-160
+	aside.name, aside.limit = "tip, aside", 30000
 	return []scene{
 		{name: "seahorses", re: "-0.7478", im: "0.1052", height: "3e-5", limit: 6000},
 		small(t, "nucleus-1e-13"),
 		{name: "tip", re: "-2", height: "1e-40", limit: 3000},
 		small(t, "embedded-1e-60"), small(t, "cubic-1e-60"), small(t, "julia-cycle-1e-60"),
 		small(t, "misiurewicz-1e-150"), small(t, "range-edge-1e-305"),
-		deepSet(t), small(t, "embedded-1e-500"),
+		deepSet(t), aside, small(t, "embedded-1e-500"),
 		{name: "near i", im: "1", height: "1e-700", limit: 6000},
 	}
 }

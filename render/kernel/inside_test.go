@@ -3,6 +3,7 @@ package kernel
 import (
 	"math/cmplx"
 	"math/rand/v2"
+	"strconv"
 	"testing"
 )
 
@@ -60,8 +61,10 @@ func powerOfTen(x float64) float64 { return real(cmplx.Pow(10, complex(x, 0))) }
 
 // escapes iterates in doubles, sharing nothing with the kernel: the index at
 // which the orbit of c leaves |z| <= 4, 0 if it does not.
-func escapes(c complex128, power, limit int) int {
-	z := c
+func escapes(c complex128, power, limit int) int { return leaves(c, c, power, limit) }
+
+// leaves is the same for any start z.
+func leaves(z, c complex128, power, limit int) int {
 	for n := 1; n <= limit; n++ {
 		if real(z)*real(z)+imag(z)*imag(z) > 16 {
 			return n
@@ -110,30 +113,90 @@ func TestWholeSets(t *testing.T) {
 	}
 }
 
-// TestCopies: small copies of the set at depth. All points claimed to be inside
-// stay bounded under direct iteration at full precision; and of the points left
-// over when the limit is reached, which is where time goes, few are inside.
-func TestCopies(t *testing.T) {
-	checks, samples := 4, 1500
-	if testing.Short() {
-		checks, samples = 1, 500
+// TestMultiplier asks the cycle search itself, without the gate, on both sides
+// of boundaries that have a formula: near w = exp(iθ) the fixed point w/2 of
+// c = w/2 - w²/4 has the multiplier w, and the 2-cycle around 0 of c = -1 + w/4
+// the multiplier w. Whatever the search is given to start from, it must never
+// claim |w| >= 1, and near its margin of 2^-20 in |w|² it must claim |w| < 1.
+func TestMultiplier(t *testing.T) {
+	for _, angle := range []float64{0.3, 1, 2, 2.8} {
+		w := cmplx.Rect(1, angle)
+		for period, c := range map[int]complex128{1: w/2 - w*w/4, 2: -1 + w/4} {
+			s := scene{re: short(real(c)), im: short(imag(c)), height: "2e-5", limit: 1000, centreOnly: true}
+			s.build(t)
+			var claimed, refused int
+			for _, p := range s.spread(400, 24) {
+				re, im := s.kernel.plane(p[0], p[1])
+				l := s.kernel.start(re, im)
+				l.m, l.nearN = s.ref.Rebase, period
+				at := s.complexAt(p)
+				start := (1 - cmplx.Sqrt(1-4*at)) / 2 // the fixed point
+				if period == 2 {
+					start = (-1 + cmplx.Sqrt(-3-4*at)) / 2 // z² + z + c + 1 = 0
+				}
+				m := cmplx.Abs(2 * start)
+				if period == 2 {
+					m = cmplx.Abs(4 * (at + 1))
+				}
+				l.dr, l.di = real(start)+0.001, imag(start)-0.002
+				got := s.kernel.attracted(&l)
+				switch {
+				case got && m >= 1:
+					t.Errorf("period %d at %v: multiplier %.9f is claimed to attract", period, at, m)
+				case !got && m < 1-1e-6:
+					t.Errorf("period %d at %v: multiplier %.9f is not found to attract", period, at, m)
+				case got:
+					claimed++
+				default:
+					refused++
+				}
+			}
+			if claimed < 50 || refused < 50 {
+				t.Errorf("period %d, angle %v: %d claimed, %d refused", period, angle, claimed, refused)
+			}
+		}
 	}
-	tip30, tip100, deepest := tipSet(t, 26), tipSet(t, 90), tipSet(t, 280)
+}
+
+// short writes a double as a decimal.
+func short(x float64) string { return strconv.FormatFloat(x, 'f', -1, 64) }
+
+// TestCopies: small copies of the set at depth. Of the points that stay bounded
+// to the limit, which is where time goes, most must be proved to lie inside;
+// and those claimed to lie inside close to the boundary, a third of them around
+// the cusp, must stay bounded under direct iteration at full precision.
+func TestCopies(t *testing.T) {
+	checks, samples := 6, 1500
+	if testing.Short() {
+		checks, samples = 2, 500
+	}
+	tip30, tip100, deepest := tipSet(t, 26, 0), tipSet(t, 90, 0), tipSet(t, 280, 0)
 	tip30.limit, tip100.limit, deepest.limit = 30000, 30000, 30000
-	minibrot := tinySet(t)
 	for _, v := range []struct {
 		scene
-		share int // per cent of bounded samples that must be proved inside
-	}{{tip30, 95}, {tip100, 90}, {deepest, 80}, {minibrot, 65}} {
+		cusp  [2]float64 // pixels right of and above the view's centre
+		share int        // per cent of bounded samples that must be proved inside
+	}{
+		// The tip's copies are about a third of the view and not turned, so
+		// their cusp lies a quarter of that to the right of the nucleus; of the
+		// other one any piece of the boundary must do.
+		{tip30, [2]float64{2.9, 0}, 90}, {tip100, [2]float64{2.9, 0}, 85},
+		{deepest, [2]float64{2.9, 0}, 75}, {tinySet(t), [2]float64{-4.8, 1}, 65},
+	} {
 		s := v.build(t)
-		var inside, undecided int
+		var inside, undecided, checked int
 		for i, p := range s.spread(samples, 21) {
 			// the middle of the view, where the copy is
-			x, y := s.kernel.cfg.View.MidX+(p[0]-24)/1.5, s.kernel.cfg.View.MidY+(p[1]-16)/1.5
+			x, y := (p[0]-24)/1.5, (p[1]-16)/1.5
+			if i%3 == 0 {
+				x, y = v.cusp[0]+(p[0]-24)/30, v.cusp[1]+(p[1]-16)/30
+			}
+			x, y = x+24, y+16
 			switch s.kernel.Sample(x, y).State {
 			case Inside:
 				inside++
-				if inside <= checks {
+				if checked < checks && s.atEdge(x, y) {
+					checked++
 					if e := s.exactTo(t, x, y, 2*s.limit); e.Escaped {
 						t.Errorf("%s, sample %d: Inside, yet escapes at %d", s.name, i, e.N)
 					}
@@ -143,10 +206,20 @@ func TestCopies(t *testing.T) {
 			}
 		}
 		t.Logf("%-20s %-6s %d inside, %d undecided", s.name, s.regime(), inside, undecided)
-		if inside*100 < v.share*(inside+undecided) || inside < samples/50 {
-			t.Errorf("%s: of %d bounded samples only %d are proved inside", s.name, inside+undecided, inside)
+		if inside*100 < v.share*(inside+undecided) || inside < samples/50 || checked == 0 {
+			t.Errorf("%s: of %d bounded samples only %d are proved inside, %d at the edge", s.name, inside+undecided, inside, checked)
 		}
 	}
+}
+
+// atEdge reports whether something escapes a fifth of a pixel away.
+func (s *scene) atEdge(x, y float64) bool {
+	for _, d := range [][2]float64{{0.2, 0}, {-0.2, 0}, {0, 0.2}, {0, -0.2}} {
+		if s.kernel.Sample(x+d[0], y+d[1]).State == Escaped {
+			return true
+		}
+	}
+	return false
 }
 
 // TestTraps: filled Julia sets of parameters with attracting cycles of several
@@ -178,10 +251,8 @@ func TestTraps(t *testing.T) {
 			switch f := s.kernel.Sample(p[0], p[1]); f.State {
 			case Inside:
 				inside++
-				if inside%40 == 1 {
-					if e := s.exactTo(t, p[0], p[1], 5000); e.Escaped {
-						t.Errorf("%s %v: trapped, yet escapes at %d", s.name, p, e.N)
-					}
+				if n := leaves(s.complexAt(p), s.parameter(), v.power, 2000); n > 0 {
+					t.Errorf("%s %v: trapped, yet escapes at %d", s.name, p, n)
 				}
 			case Undecided:
 				undecided++
@@ -192,6 +263,18 @@ func TestTraps(t *testing.T) {
 			t.Errorf("%s: %d inside, %d undecided", s.name, inside, undecided)
 		}
 	}
+}
+
+// complexAt and parameter give a point of a direct view, and its c, in doubles.
+func (s *scene) complexAt(p [2]float64) complex128 {
+	z := s.at(p[0], p[1])
+	re, _ := z.re.Float64()
+	im, _ := z.im.Float64()
+	return complex(re, im)
+}
+
+func (s *scene) parameter() complex128 {
+	return complex(s.kernel.cfg.Parameter[0], s.kernel.cfg.Parameter[1])
 }
 
 // TestNoTraps: parameters without an attracting cycle get no trap: outside the

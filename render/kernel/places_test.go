@@ -21,7 +21,7 @@ func tinySet(t testing.TB) scene { return small(t, "minibrot-1e-30") }
 
 // deepSet shows a small copy at 1e-339, below the range of doubles.
 func deepSet(t testing.TB) scene {
-	s := tipSet(t, 280)
+	s := tipSet(t, 280, 0)
 	s.limit = 30000
 	return s
 }
@@ -30,8 +30,9 @@ func deepSet(t testing.TB) scene {
 // nearest to -2 among those of a period. Its nucleus is the zero of z_period
 // next to -2 + (3/2)π²·4^-period (z_n = 2 cosh(2^(n-2)·√(-8δ/3)) near the tip, see
 // TestTip), found by Newton's method in big floats. The copy is about
-// 0.3 times the square of its distance from the tip.
-func tipSet(t testing.TB, period int) scene {
+// 0.3 times the square of its distance from the tip. The view is three times as
+// high as the copy, and moved to the right by aside of its height.
+func tipSet(t testing.TB, period int, aside float64) scene {
 	t.Helper()
 	bits := uint(4*period + 128)
 	big1 := func(x float64) *big.Float { return new(big.Float).SetPrec(bits).SetFloat64(x) }
@@ -50,6 +51,7 @@ func tipSet(t testing.TB, period int) scene {
 	off.Add(c, big1(2))
 	size := off.Mul(off, off)
 	size.Mul(size, big1(0.9))
+	c.Add(c, new(big.Float).Mul(size, big1(aside)))
 	return scene{
 		name:   fmt.Sprintf("tip, period %d", period),
 		re:     precision.DecimalOf(c, int(float64(bits)*0.301)).String(),

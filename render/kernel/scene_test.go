@@ -266,14 +266,6 @@ func (a point) norm() *big.Float {
 
 func (a point) abs() *big.Float { n := a.norm(); return n.Sqrt(n) }
 
-// inv is 1/a.
-func (a point) inv() point {
-	n := a.norm()
-	re := new(big.Float).Quo(a.re, n)
-	im := new(big.Float).Quo(a.im, n)
-	return point{re, im.Neg(im)}
-}
-
 // sqrt is a root of a: with m = |a|, √((m+x)/2) ± i√((m-x)/2).
 func (a point) sqrt() point {
 	m := a.abs()
