@@ -1,6 +1,7 @@
 package kernel
 
 import (
+	"math"
 	"math/cmplx"
 	"math/rand/v2"
 	"strconv"
@@ -261,6 +262,33 @@ func TestTraps(t *testing.T) {
 		t.Logf("z^%d + %s: %d inside, %d undecided", v.power, s.name, inside, undecided)
 		if undecided*50 > inside || inside < samples/400 {
 			t.Errorf("%s: %d inside, %d undecided", s.name, inside, undecided)
+		}
+	}
+}
+
+// TestTrapsHold: the map carries each trap into the next and the last into the
+// first, so no orbit leaves. The edge is enough (maximum modulus principle).
+func TestTrapsHold(t *testing.T) {
+	for _, v := range []struct {
+		power  int
+		re, im string
+	}{{2, "0.2", "0"}, {2, "0.24", "0"}, {2, "-0.1", "0.6"}, {2, "-1.1", "0.1"}, {2, "-0.1226", "0.7449"}, {2, "-1.7549", "0"},
+		{2, "-0.5043", "0.5628"}, {2, "-1.3107", "0"}, {3, "0.2", "0.1"}, {3, "0.1", "1.02"}} {
+		s := (&scene{height: "3", power: v.power, julia: true, paramRe: v.re, paramIm: v.im, limit: 500}).build(t)
+		traps := s.kernel.traps
+		if len(traps) == 0 {
+			t.Errorf("z^%d + %s + %si: no traps", v.power, v.re, v.im)
+		}
+		for i, a := range traps {
+			b := traps[(i+1)%len(traps)]
+			for k := range 360 {
+				z := complex(a.re, a.im) + cmplx.Rect(math.Sqrt(a.r2), float64(k)*math.Pi/180)
+				w := cmplx.Pow(z, complex(float64(v.power), 0)) + s.parameter()
+				if d := cmplx.Abs(w - complex(b.re, b.im)); d > math.Sqrt(b.r2)*(1+1e-9) {
+					t.Fatalf("z^%d + %s + %si: trap %d is carried to %v from the middle of the next, whose radius is %v",
+						v.power, v.re, v.im, i, d, math.Sqrt(b.r2))
+				}
+			}
 		}
 	}
 }

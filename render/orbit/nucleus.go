@@ -32,7 +32,7 @@ func (w *walker) detect(centre *precision.Fixed) (*trace, error) {
 			return o, nil
 		}
 		if z.Equal(saved) {
-			o.period, o.wrap = n-savedAt, savedAt
+			o.close(n-savedAt, savedAt)
 			return o, nil
 		}
 		if n == next {

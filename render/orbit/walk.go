@@ -76,7 +76,7 @@ func (w *walker) walk(stage string, z0, c *precision.Fixed, limit int) (*trace, 
 			return o, nil
 		}
 		if z.Equal(saved) {
-			o.period, o.wrap = n-savedAt, savedAt
+			o.close(n-savedAt, savedAt)
 			return o, nil
 		}
 		if n == next {
@@ -85,6 +85,30 @@ func (w *walker) walk(stage string, z0, c *precision.Fixed, limit int) (*trace, 
 		}
 	}
 	return o, nil
+}
+
+// closedAtLeast is how long an orbit that closes without passing 0 is made by
+// walking it round again: leaps end where the orbit does.
+const closedAtLeast = 8192
+
+// close notes that the last point equals the one at index wrap, a period ago,
+// and repeats the cycle until the orbit is long enough for long leaps. A cycle
+// through 0, which no leap passes, is only made long enough not to wrap at
+// every step.
+func (o *trace) close(period, wrap int) {
+	o.period, o.wrap = period, wrap
+	if len(o.tiny) > 0 {
+		return // passes so near to 0 that no long leap would hold
+	}
+	least := closedAtLeast
+	for i := range period {
+		if p := o.points[wrap+i]; p.Re == 0 && p.Im == 0 {
+			least = wrapAtLeast
+		}
+	}
+	for len(o.points) <= least || (len(o.points)-1-wrap)%period != 0 {
+		o.points = append(o.points, o.points[len(o.points)-period])
+	}
 }
 
 // wrapAtLeast is the shortest closed reference: a shorter period is walked
