@@ -141,9 +141,6 @@ func nearest(x *big.Int) (m float64, e int64) {
 	if n == 0 {
 		return 0, 0
 	}
-	if bits.UintSize != 64 {
-		return nearestFloat(x)
-	}
 	top := uint64(w[n-1])
 	s := uint(bits.LeadingZeros64(top))
 	top <<= s
@@ -176,12 +173,4 @@ func roundToFloat(u uint64) float64 {
 		u++
 	}
 	return float64(int64(u)) * 2048
-}
-
-// nearestFloat is nearest for machines whose words are not 64 bits long.
-func nearestFloat(x *big.Int) (float64, int64) {
-	f := new(big.Float).SetPrec(53).SetInt(x)
-	e := int64(f.MantExp(nil)) - 64
-	m, _ := f.SetMantExp(f, -int(e)).Float64()
-	return m, e
 }

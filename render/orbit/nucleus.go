@@ -16,46 +16,26 @@ const maxAttempts = 3
 // in the view. Newton's method then finds that nucleus. Where none is found
 // the centre's own orbit is returned, walked to its end.
 func (w *walker) detect(centre *precision.Fixed) (*trace, error) {
-	o := new(trace)
-	z := &precision.Fixed{Frac: w.frac}
-	saved, savedAt, next := new(precision.Fixed).Set(z), 0, 2
 	var x, d precision.ExtComplex // z, dz/dc
 	one := precision.NewExtComplex(1, 0, 0)
-	w.record(o, z)
 	attempts := 0
-	for n := 1; n <= w.q.Limit; n++ {
-		if err := w.pause("orbit", n, w.q.Limit); err != nil {
-			return nil, err
-		}
-		w.step(z, centre)
-		if w.record(o, z) {
-			return o, nil
-		}
-		if z.Equal(saved) {
-			o.close(n-savedAt, savedAt)
-			return o, nil
-		}
-		if n == next {
-			saved.Set(z)
-			savedAt, next = n, 2*next
-		}
+	zero := &precision.Fixed{Frac: w.frac}
+	return w.walk("orbit", zero, centre, w.q.Limit, func(n int, z *precision.Fixed) (*trace, error) {
 		if attempts == maxAttempts {
-			continue
+			return nil, nil
 		}
 		d = w.q.Map.Derivative(x).Mul(d).Add(one)
 		x = z.Ext()
-		if x.Key() < d.MulReal(w.q.Radius).Key() {
-			attempts++
-			c, err := w.newton(centre, n)
-			if err != nil {
-				return nil, err
-			}
-			if c != nil {
-				return w.periodic(c, n)
-			}
+		if x.Key() >= d.MulReal(w.q.Radius).Key() {
+			return nil, nil
 		}
-	}
-	return o, nil
+		attempts++
+		c, err := w.newton(centre, n)
+		if c == nil {
+			return nil, err
+		}
+		return w.periodic(c, n)
+	})
 }
 
 // newtonSteps bounds Newton's method; from inside the view it needs three to

@@ -129,13 +129,13 @@ func (r *Reference) mandelbrot(w *walker, centre *precision.Fixed) error {
 // the frame's parameter.
 func (r *Reference) julia(w *walker, centre *precision.Fixed) error {
 	c := precision.NewFixed(w.q.Parameter[0], w.q.Parameter[1], w.frac)
-	o, err := w.walk("orbit", centre, c, w.q.Limit)
+	o, err := w.walk("orbit", centre, c, w.q.Limit, nil)
 	if err != nil {
 		return err
 	}
 	r.append(o)
 	zero := &precision.Fixed{Frac: w.frac}
-	if o, err = w.walk("critical orbit", zero, c, w.q.Limit); err != nil {
+	if o, err = w.walk("critical orbit", zero, c, w.q.Limit, nil); err != nil {
 		return err
 	}
 	r.Rebase = len(r.Points)

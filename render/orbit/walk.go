@@ -59,8 +59,9 @@ func (w *walker) step(z, c *precision.Fixed) {
 }
 
 // walk follows z under f + c for at most limit iterations, until it escapes or
-// repeats a former value to the last bit (Brent's cycle detection).
-func (w *walker) walk(stage string, z0, c *precision.Fixed, limit int) (*trace, error) {
+// repeats a former value to the last bit (Brent's cycle detection). watch, if
+// set, sees every iterate; a trace that it returns takes this one's place.
+func (w *walker) walk(stage string, z0, c *precision.Fixed, limit int, watch watcher) (*trace, error) {
 	o := new(trace)
 	z := new(precision.Fixed).Set(z0)
 	saved, savedAt, next := new(precision.Fixed).Set(z0), 0, 2
@@ -83,9 +84,18 @@ func (w *walker) walk(stage string, z0, c *precision.Fixed, limit int) (*trace, 
 			saved.Set(z)
 			savedAt, next = n, 2*next
 		}
+		if watch == nil {
+			continue
+		}
+		if better, err := watch(n, z); better != nil || err != nil {
+			return better, err
+		}
 	}
 	return o, nil
 }
+
+// watcher looks at the n-th iterate of a walk.
+type watcher func(n int, z *precision.Fixed) (*trace, error)
 
 // closedAtLeast is how long an orbit that closes without passing 0 is made by
 // walking it round again: leaps end where the orbit does.
