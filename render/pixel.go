@@ -4,6 +4,7 @@ import (
 	"math"
 	"time"
 
+	"leadline/render/frame"
 	"leadline/render/ink"
 	"leadline/render/kernel"
 )
@@ -23,6 +24,11 @@ func (c *Counts) Add(d Counts) {
 	c.Inside += d.Inside
 	c.Undecided += d.Undecided
 	c.Encoding += d.Encoding
+}
+
+// record is the counts as a sidecar keeps them.
+func (c Counts) record() frame.Counts {
+	return frame.Counts{Pixels: c.Pixels, Samples: c.Samples, Escaped: c.Escaped, Inside: c.Inside, Undecided: c.Undecided}
 }
 
 func (c *Counts) note(s kernel.State) {

@@ -7,6 +7,7 @@ import (
 	"image/png"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 	"time"
 
@@ -223,5 +224,28 @@ func TestFrozenFrameIsComplete(t *testing.T) {
 	if !f.Frozen() || f.Set.Power == 0 || f.Iteration.Bailout == 0 || f.Sampling.Tolerance == nil ||
 		f.Sampling.Filter == "" || f.Ink.Ramp == nil || f.Ink.Inside == nil || f.Sheet.PPI == 0 || f.Sheet.Space == "" {
 		t.Errorf("frozen frame leaves something open:\n%s", b)
+	}
+}
+
+// TestVerifyReadsTheRecord alters counts and reference of a sidecar, one at a
+// time.
+func TestVerifyReadsTheRecord(t *testing.T) {
+	r, err := printed(t, "double", PrintOptions{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	for name, alter := range map[string]func(*frame.Record){
+		"counts":    func(v *frame.Record) { v.Counts.Samples++; v.Counts.Escaped++ },
+		"reference": func(v *frame.Record) { v.Reference.Bits++ },
+	} {
+		e, err := Gather(r.Sidecar)
+		if err != nil {
+			t.Fatal(err)
+		}
+		alter(e.Record)
+		var m *MismatchError
+		if _, err := Verify(context.Background(), e, 0, 0, Options{}); !errors.As(err, &m) || !strings.Contains(m.What, name) {
+			t.Errorf("altered %s: %v", name, err)
+		}
 	}
 }

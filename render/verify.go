@@ -10,6 +10,7 @@ import (
 	"io"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"leadline/render/frame"
@@ -20,9 +21,10 @@ import (
 type Evidence struct {
 	Frame  *frame.Frame
 	Origin Origin
-	SHA256 string // of the pixels as rendered; empty when only the PNG is at hand
-	File   string // the PNG; empty when only the sidecar is at hand
-	Source string // what the evidence was read from
+	SHA256 string        // of the pixels as rendered; empty when only the PNG is at hand
+	Record *frame.Record // nil when only the PNG is at hand
+	File   string        // the PNG; empty when only the sidecar is at hand
+	Source string        // what the evidence was read from
 }
 
 // MismatchError says in words what is not as it should be.
@@ -53,7 +55,7 @@ func Gather(path string) (*Evidence, error) {
 		side += suspectSuffix
 	}
 	if s, err := gatherSidecar(side); err == nil && filepath.Base(s.File) == filepath.Base(path) {
-		e.SHA256, e.Source = s.SHA256, path+" and "+side
+		e.SHA256, e.Record, e.Source = s.SHA256, s.Record, path+" and "+side
 	} else if err != nil && !errors.Is(err, os.ErrNotExist) {
 		return nil, err
 	}
@@ -70,7 +72,7 @@ func gatherSidecar(path string) (*Evidence, error) {
 			"verify the sidecar or the PNG that a render made"}
 	}
 	r := d.Sidecar.Record
-	e := &Evidence{Frame: d.Frame, SHA256: r.SHA256, Source: path,
+	e := &Evidence{Frame: d.Frame, SHA256: r.SHA256, Record: &r, Source: path,
 		Origin: Origin{r.Release, r.Numerics, r.Pixels}}
 	if file := filepath.Join(filepath.Dir(path), filepath.Base(r.File)); exists(file) {
 		e.File = file
@@ -184,12 +186,13 @@ func (v *verifier) whole(ctx context.Context) (*Verdict, error) {
 	}
 	diff := differ{rect: v.rect}
 	var again, stored printfile.Hasher
-	_, err := v.p.Bands(ctx, v.rect, v.e.Origin.Pixels.Scale, v.o, func(rows []byte) error {
+	var have []byte
+	counts, err := v.p.Bands(ctx, v.rect, v.e.Origin.Pixels.Scale, v.o, func(rows []byte) error {
 		again.Write(rows)
 		if file == nil {
 			return nil
 		}
-		have := make([]byte, len(rows))
+		have = slices.Grow(have[:0], len(rows))[:len(rows)]
 		if err := readRows(file, have); err != nil {
 			return err
 		}
@@ -201,7 +204,29 @@ func (v *verifier) whole(ctx context.Context) (*Verdict, error) {
 		return nil, err
 	}
 	d.SHA256 = again.Hex()
-	return d, v.judge(&diff, d.SHA256, stored.Hex(), file != nil)
+	if err := v.judge(&diff, d.SHA256, stored.Hex(), file != nil); err != nil {
+		return nil, err
+	}
+	return d, v.record(counts)
+}
+
+// record holds the rest of the record against the fresh render.
+func (v *verifier) record(n Counts) error {
+	r := v.e.Record
+	if r == nil {
+		return nil
+	}
+	what := ""
+	switch ref := v.p.reference(); {
+	case r.Counts != n.record():
+		what = "counts"
+	case r.Reference.Kind != ref.Kind || r.Reference.Period != ref.Period || r.Reference.Length != ref.Length || r.Reference.Bits != ref.Bits:
+		what = "reference"
+	default:
+		return nil
+	}
+	return &MismatchError{"record: the pixels are right, but the " + what + " recorded are not those of a fresh render",
+		"the sidecar was altered"}
 }
 
 // judge puts the differences into words.
