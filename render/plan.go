@@ -82,7 +82,12 @@ func NewPlan(ctx context.Context, f *frame.Frame, o Options) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	p, err := newPlan(ctx, f, r, o)
+	return finishPlan(ctx, f, r, nil, o)
+}
+
+// finishPlan makes a plan, around a stored reference where there is one.
+func finishPlan(ctx context.Context, f *frame.Frame, r *frame.Resolved, ref *orbit.Reference, o Options) (*Plan, error) {
+	p, err := newPlan(ctx, f, r, ref, o)
 	if err != nil {
 		return nil, err
 	}
@@ -99,12 +104,12 @@ func NewProbe(ctx context.Context, f *frame.Frame, o Options) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	return newPlan(ctx, f, r, o)
+	return newPlan(ctx, f, r, nil, o)
 }
 
 // newPlan makes the part of a plan that iterates.
-func newPlan(ctx context.Context, f *frame.Frame, r *frame.Resolved, o Options) (*Plan, error) {
-	p := &Plan{frame: frozen(f, r), r: r, Geometry: r.Sheet, Space: r.Space,
+func newPlan(ctx context.Context, f *frame.Frame, r *frame.Resolved, ref *orbit.Reference, o Options) (*Plan, error) {
+	p := &Plan{frame: frozen(f, r), r: r, ref: ref, Geometry: r.Sheet, Space: r.Space,
 		Seconds: map[string]float64{}, sampler: newSampler(r)}
 	p.pixel = r.Height.Ext().Quo(precision.ExtOf(float64(p.Geometry.TrimH)))
 	return p, p.iterate(ctx, o)
@@ -150,9 +155,11 @@ func (p *Plan) refer(ctx context.Context, c *kernel.Config, o Options) error {
 	if c.Julia {
 		q.Parameter = [2]precision.Decimal{r.Parameter.Re, r.Parameter.Im}
 	}
-	var err error
-	if p.ref, err = orbit.New(ctx, q); err != nil {
-		return err
+	if p.ref == nil {
+		var err error
+		if p.ref, err = orbit.New(ctx, q); err != nil {
+			return err
+		}
 	}
 	p.clock(PhaseReference, start)
 	start = time.Now()

@@ -79,36 +79,69 @@ func (e *SuspectError) Hint() string {
 // a *SuspectError.
 func Print(ctx context.Context, f *frame.Frame, o PrintOptions) (*Result, error) {
 	started := time.Now()
-	if o.Scale == 0 {
-		o.Scale = 1
-	}
-	rect, err := o.part(f)
-	if err != nil {
+	if err := o.ready(f); err != nil {
 		return nil, err
-	}
-	for _, path := range []string{o.Out, SidecarPath(o.Out)} {
-		if err := printfile.Try(path); err != nil {
-			return nil, err
-		}
 	}
 	p, err := NewPlan(ctx, f, o.Options)
 	if err != nil {
 		return nil, err
 	}
-	return (&printer{p: p, o: o, rect: rect, started: started}).print(ctx)
+	return assemble(ctx, p, o, started, nil)
 }
 
-// part is the rectangle to print. What cannot be printed is refused here,
+// Rows hands the rows of a print to sink, from the top down, any number of
+// whole rows at a time, and says what was computed for them.
+type Rows func(ctx context.Context, sink func(rows []byte) error) (Counts, error)
+
+// Assemble is Print for pixels that were computed before, elsewhere or by
+// others: rows gives those of the plan's print. Everything else is the same,
+// the audit too.
+func Assemble(ctx context.Context, p *Plan, o PrintOptions, rows Rows) (*Result, error) {
+	if err := o.ready(p.frame); err != nil {
+		return nil, err
+	}
+	return assemble(ctx, p, o, time.Now(), rows)
+}
+
+// assemble makes the files; without rows it computes them.
+func assemble(ctx context.Context, p *Plan, o PrintOptions, started time.Time, rows Rows) (*Result, error) {
+	rect, err := o.Part(p.frame)
+	if err != nil {
+		return nil, err
+	}
+	o.Scale = max(o.Scale, 1)
+	if rows == nil {
+		rows = func(ctx context.Context, sink func([]byte) error) (Counts, error) {
+			return p.Bands(ctx, rect, o.Scale, o.Options, sink)
+		}
+	}
+	return (&printer{p: p, o: o, rect: rect, started: started, rows: rows}).print(ctx)
+}
+
+// ready refuses early what cannot be printed, or not there.
+func (o PrintOptions) ready(f *frame.Frame) error {
+	if _, err := o.Part(f); err != nil {
+		return err
+	}
+	for _, path := range []string{o.Out, SidecarPath(o.Out)} {
+		if err := printfile.Try(path); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// Part is the rectangle to print, in the lattice at the wanted scale. What cannot be printed is refused here,
 // before the reference orbit, which may take long.
-func (o PrintOptions) part(f *frame.Frame) (image.Rectangle, error) {
+func (o PrintOptions) Part(f *frame.Frame) (image.Rectangle, error) {
 	r, err := f.Resolve()
 	if err != nil {
 		return image.Rectangle{}, err
 	}
-	if err := checkScale(r.Sheet, o.Scale); err != nil {
+	if err := checkScale(r.Sheet, max(o.Scale, 1)); err != nil {
 		return image.Rectangle{}, err
 	}
-	full := r.Sheet.Scaled(o.Scale).Full()
+	full := r.Sheet.Scaled(max(o.Scale, 1)).Full()
 	if o.Crop == nil {
 		return full, nil
 	}
@@ -125,6 +158,7 @@ type printer struct {
 	rect     image.Rectangle
 	started  time.Time
 	document []byte // the frozen frame
+	rows     Rows
 }
 
 // print renders, audits and puts the files in place.
@@ -161,7 +195,7 @@ func (q *printer) print(ctx context.Context) (*Result, error) {
 func (q *printer) pixels(ctx context.Context, w *printfile.Writer, hash *printfile.Hasher, a *auditor) (Counts, error) {
 	start := time.Now()
 	var file time.Duration
-	counts, err := q.p.Bands(ctx, q.rect, q.o.Scale, q.o.Options, func(rows []byte) error {
+	counts, err := q.rows(ctx, func(rows []byte) error {
 		begin := time.Now()
 		defer func() { file += time.Since(begin) }()
 		hash.Write(rows)
