@@ -59,6 +59,11 @@ func completePNG(c *cobra.Command, flag string) {
 	registerCompletion(c, flag, cobra.FixedCompletions([]string{"png"}, cobra.ShellCompDirectiveFilterFileExt))
 }
 
+// completeFolder completes a flag with the names of folders.
+func completeFolder(c *cobra.Command, flag string) {
+	registerCompletion(c, flag, cobra.FixedCompletions(nil, cobra.ShellCompDirectiveFilterDirs))
+}
+
 func registerCompletion(c *cobra.Command, flag string, f cobra.CompletionFunc) {
 	// The only error is a flag that does not exist, a slip in this program.
 	if err := c.RegisterFlagCompletionFunc(flag, f); err != nil {

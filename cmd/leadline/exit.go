@@ -5,6 +5,7 @@ import (
 	"errors"
 	"os"
 
+	"leadline/jobs/parts"
 	"leadline/render"
 	"leadline/render/frame"
 	"leadline/render/sheet"
@@ -17,6 +18,7 @@ const (
 	exitUsage       = 2
 	exitFrame       = 3
 	exitMismatch    = 4
+	exitUndone      = 5
 	exitInterrupted = 130
 )
 
@@ -27,17 +29,21 @@ func exitCode(ctx context.Context, err error) int {
 	var crop *sheet.CropError
 	var faults frame.Faults
 	var mismatch *render.MismatchError
+	var which *parts.WhichError
+	var undone *parts.UndoneError
 	switch {
 	case err == nil:
 		return exitDone
 	case interrupted(ctx, err):
 		return exitInterrupted
-	case errors.As(err, &call), errors.As(err, &scale), errors.As(err, &crop):
+	case errors.As(err, &call), errors.As(err, &scale), errors.As(err, &crop), errors.As(err, &which):
 		return exitUsage
 	case errors.As(err, &faults):
 		return exitFrame
 	case errors.As(err, &mismatch):
 		return exitMismatch
+	case errors.As(err, &undone):
+		return exitUndone
 	}
 	return exitFailed
 }

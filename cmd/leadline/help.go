@@ -10,7 +10,7 @@ import (
 const exitHelp = `
 Results go to standard output, talk to standard error. Exit codes:
   0 done      2 called wrongly    4 does not match
-  1 failed    3 bad frame         130 interrupted
+  1 failed    3 bad frame         5 work left undone    130 interrupted
 `
 
 // helpWidth is the width help is set for, the usual terminal's.
@@ -19,15 +19,18 @@ const helpWidth = 80
 // showHelp prints a command's help.
 func showHelp(cmd *cobra.Command, _ []string) {
 	text := strings.TrimSpace(cmd.Long) + "\n"
-	if cmd.HasParent() {
+	topic := cmd.IsAdditionalHelpTopicCommand()
+	if cmd.HasParent() && !topic {
 		text += "\nUsage\n  " + cmd.Parent().CommandPath() + " " + cmd.Use + "\n"
 	}
 	if cmd.HasExample() {
 		text += "\nExamples\n" + cmd.Example + "\n"
 	}
-	if cmd.HasParent() {
+	switch {
+	case topic:
+	case cmd.HasParent():
 		text += "\nFlags\n" + cmd.LocalFlags().FlagUsagesWrapped(helpWidth)
-	} else {
+	default:
 		text += commandList(cmd) + exitHelp
 	}
 	fmt.Fprint(cmd.OutOrStdout(), text)
@@ -36,7 +39,7 @@ func showHelp(cmd *cobra.Command, _ []string) {
 func commandList(root *cobra.Command) string {
 	text := "\nCommands (leadline help COMMAND says more)\n"
 	for _, c := range root.Commands() {
-		if c.IsAvailableCommand() || c.Name() == "help" {
+		if c.IsAvailableCommand() || c.Name() == "help" || c.IsAdditionalHelpTopicCommand() {
 			text += fmt.Sprintf("  %-11s %s\n", c.Name(), c.Short)
 		}
 	}
@@ -70,7 +73,7 @@ func completeCommands(cmd *cobra.Command, args []string, _ string) ([]string, co
 	var names []string
 	if len(args) == 0 {
 		for _, c := range cmd.Root().Commands() {
-			if c.IsAvailableCommand() {
+			if c.IsAvailableCommand() || c.IsAdditionalHelpTopicCommand() {
 				names = append(names, cobra.CompletionWithDesc(c.Name(), c.Short))
 			}
 		}

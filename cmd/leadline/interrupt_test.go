@@ -20,7 +20,7 @@ func TestKillLeavesNoPrint(t *testing.T) {
 	if code := p.end(); code != -1 {
 		t.Fatalf("exit code %d of a killed process", code)
 	}
-	if files := contents(t, dir); len(files) != 1 || len(parts(files)) != 1 {
+	if files := contents(t, dir); len(files) != 1 || len(hidden(files)) != 1 {
 		t.Fatalf("a killed render left %v, not just one hidden part", keys(files))
 	}
 	command(t, dir, "render", testdata(t, "small.frame.json"), "--out", "tide.png")
@@ -37,7 +37,7 @@ func TestKillSparesThePrintUnderWay(t *testing.T) {
 	dir := t.TempDir()
 	p := startPrint(t, dir, "slow.frame.json")
 	command(t, dir, "render", testdata(t, "small.frame.json"), "--out", "tide.png")
-	if files := contents(t, dir); len(parts(files)) != 1 {
+	if files := contents(t, dir); len(hidden(files)) != 1 {
 		t.Errorf("the part of a living render is gone: %v", keys(files))
 	}
 	p.signal(syscall.SIGTERM)
@@ -100,7 +100,7 @@ func TestSecondSignalStopsAtOnce(t *testing.T) {
 	if last := p.heard[len(p.heard)-1]; strings.Contains(last, "interrupted") {
 		t.Errorf("a clean end after the second signal: %q", last)
 	}
-	if files := contents(t, dir); len(files) != 1 || len(parts(files)) != 1 {
+	if files := contents(t, dir); len(files) != 1 || len(hidden(files)) != 1 {
 		t.Errorf("left %v, not just one hidden part", keys(files))
 	}
 }

@@ -136,8 +136,8 @@ func contents(t *testing.T, dir string) map[string]string {
 	return files
 }
 
-// parts are the names of hidden parts of tide.png.
-func parts(files map[string]string) (names []string) {
+// hidden are the names of hidden parts of tide.png.
+func hidden(files map[string]string) (names []string) {
 	for name := range files {
 		if strings.HasPrefix(name, ".tide.png.") && strings.HasSuffix(name, ".part") {
 			names = append(names, name)

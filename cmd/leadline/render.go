@@ -12,6 +12,7 @@ import (
 // renderFlags are the flags of render.
 type renderFlags struct {
 	out, crop, scale, progress string
+	part, parts                string
 	workers, audit             int
 	json                       bool
 }
@@ -26,9 +27,14 @@ func renderCommand() *cobra.Command {
 		Long: `Renders a frame to a 16-bit PNG, audits random pixels of it by direct iteration
 at full precision, and writes the sidecar beside it. FRAME may be a sidecar or
 an earlier print too: their frame is printed again. PNG and sidecar appear under
-their names only when they are whole; an interrupted render leaves neither.`,
+their names only when they are whole; an interrupted render leaves neither.
+
+With --part and --parts only one stripe of the print is rendered, into a folder
+that the tasks of a batch system share; leadline join makes the print of it. See
+leadline help farm.`,
 		Example: `  leadline render tide.frame.json --out prints/tide.png
-  leadline render tide.sidecar.json --crop 1200,800,600,400`,
+  leadline render tide.sidecar.json --crop 1200,800,600,400
+  leadline render tide.frame.json --part 7/40 --parts /shared/tide`,
 		Args: oneFile("frame"), ValidArgsFunction: completeFiles,
 		RunE: func(cmd *cobra.Command, args []string) error { return runRender(cmd, args[0], g) },
 	}
@@ -39,19 +45,29 @@ their names only when they are whole; an interrupted render leaves neither.`,
 	f.StringVar(&g.scale, "scale", "1", "at `1/k` of the size, k a whole number")
 	f.IntVar(&g.audit, "audit", 32, "audit `N` random pixels")
 	f.IntVar(&g.workers, "workers", 0, "compute on `N` cores (by default all); no pixel depends on it")
+	f.StringVar(&g.part, "part", "", "only stripe `i/n` of the print, i from 1 to n; needs --parts")
+	f.StringVar(&g.parts, "parts", "", "the folder `DIR` that holds the stripes")
 	f.BoolVar(&g.json, "json", false, "end with one line of JSON instead of words")
 	progressFlag(c, &g.progress)
 	completePNG(c, "out")
+	completeFolder(c, "parts")
 	completeFlag(c, "scale", "1/2", "1/4", "1/8", "1/16")
-	for _, flag := range []string{"crop", "audit", "workers"} {
+	for _, flag := range []string{"crop", "audit", "workers", "part"} {
 		completeFlag(c, flag)
 	}
 	return c
 }
 
+func checkAudit(n int) error {
+	if n < 0 || n > maxAudit {
+		return usage(fmt.Errorf("--audit %d is out of range", n), fmt.Sprintf("a number from 0 to %d", maxAudit))
+	}
+	return nil
+}
+
 func runRender(cmd *cobra.Command, path string, g renderFlags) error {
-	if g.audit < 0 || g.audit > maxAudit {
-		return usage(fmt.Errorf("--audit %d is out of range", g.audit), fmt.Sprintf("a number from 0 to %d", maxAudit))
+	if err := checkAudit(g.audit); err != nil {
+		return err
 	}
 	if err := checkWorkers(g.workers); err != nil {
 		return err
@@ -59,6 +75,10 @@ func runRender(cmd *cobra.Command, path string, g renderFlags) error {
 	k, err := sheet.ParseScale(g.scale)
 	if err != nil {
 		return usage(fmt.Errorf("--scale: %w", err), "")
+	}
+	which, err := g.which(cmd)
+	if err != nil {
+		return err
 	}
 	meter, err := newMeter(cmd.ErrOrStderr(), g.progress)
 	if err != nil {
@@ -72,6 +92,9 @@ func runRender(cmd *cobra.Command, path string, g renderFlags) error {
 		Options: render.Options{Workers: g.workers, Progress: meter.tell}}
 	if err := g.place(cmd, path, f, &o); err != nil {
 		return err
+	}
+	if g.part != "" {
+		return runPart(cmd, f, o, which, g, meter)
 	}
 	r, err := render.Print(cmd.Context(), f.Frame, o)
 	meter.end()

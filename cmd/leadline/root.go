@@ -41,7 +41,7 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	help := helpCommand()
 	root.SetHelpCommand(help)
 	root.CompletionOptions.DisableDefaultCmd = true // we have our own
-	root.AddCommand(renderCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help)
+	root.AddCommand(renderCommand(), joinCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help, farmTopic())
 	addHelpFlag(root)
 	return root
 }
