@@ -72,7 +72,7 @@ func TestClock(t *testing.T) {
 // TestHelpFits holds every help screen against the usual terminal's 80
 // columns, and the overview against its 24 lines, one being the prompt's.
 func TestHelpFits(t *testing.T) {
-	for _, name := range []string{"", "render", "probe", "verify", "version", "completion", "help"} {
+	for _, name := range []string{"", "render", "join", "probe", "verify", "version", "completion", "help", "farm"} {
 		var out, errs bytes.Buffer
 		args := append([]string{"help"}, strings.Fields(name)...)
 		if code := run(context.Background(), args, &out, &errs); code != exitDone || errs.Len() > 0 {

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"os"
 
+	"leadline/jobs"
 	"leadline/jobs/parts"
 	"leadline/render"
 	"leadline/render/frame"
@@ -31,12 +32,15 @@ func exitCode(ctx context.Context, err error) int {
 	var mismatch *render.MismatchError
 	var which *parts.WhichError
 	var undone *parts.UndoneError
+	var option *jobs.OptionError
+	var where *jobs.AddressError
 	switch {
 	case err == nil:
 		return exitDone
 	case interrupted(ctx, err):
 		return exitInterrupted
-	case errors.As(err, &call), errors.As(err, &scale), errors.As(err, &crop), errors.As(err, &which):
+	case errors.As(err, &call), errors.As(err, &scale), errors.As(err, &crop), errors.As(err, &which),
+		errors.As(err, &option), errors.As(err, &where):
 		return exitUsage
 	case errors.As(err, &faults):
 		return exitFrame

@@ -37,9 +37,9 @@ func showHelp(cmd *cobra.Command, _ []string) {
 }
 
 func commandList(root *cobra.Command) string {
-	text := "\nCommands (leadline help COMMAND says more)\n"
+	text := "\nCommands (leadline help COMMAND says more; help farm: under a scheduler)\n"
 	for _, c := range root.Commands() {
-		if c.IsAvailableCommand() || c.Name() == "help" || c.IsAdditionalHelpTopicCommand() {
+		if c.IsAvailableCommand() || c.Name() == "help" {
 			text += fmt.Sprintf("  %-11s %s\n", c.Name(), c.Short)
 		}
 	}

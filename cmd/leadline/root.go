@@ -16,8 +16,7 @@ const rootHelp = `leadline makes large 16-bit prints of escape-time sets (the Ma
 its relatives) at any depth, each with a sidecar from which anybody can make the
 very same pixels again.`
 
-const rootExample = `  leadline render tide.frame.json              the whole sheet and its sidecar
-  leadline render tide.frame.json --scale 1/8  a look at an eighth of the size
+const rootExample = `  leadline render tide.frame.json --scale 1/8  a look at an eighth of the size
   leadline verify tide.png                     is it what the frame says?`
 
 // newRoot builds the command tree.
@@ -41,7 +40,7 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	help := helpCommand()
 	root.SetHelpCommand(help)
 	root.CompletionOptions.DisableDefaultCmd = true // we have our own
-	root.AddCommand(renderCommand(), joinCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help, farmTopic())
+	root.AddCommand(renderCommand(), joinCommand(), queueCommand(), workCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help, farmTopic())
 	addHelpFlag(root)
 	return root
 }
