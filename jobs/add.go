@@ -49,7 +49,6 @@ func (q *Queue) Add(ctx context.Context, f *frame.Frame, o AddOptions) (int64, e
 	if err != nil {
 		return 0, fmt.Errorf("queueing the frame: %w", err)
 	}
-	columns, lines := grid(rect, o.Tile)
 	crop := 0
 	if o.Crop != nil {
 		crop = 1
@@ -60,7 +59,7 @@ func (q *Queue) Add(ctx context.Context, f *frame.Frame, o AddOptions) (int64, e
 			audit, side, release, numerics, state, tiles, added)
 			VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, ?, {now}) RETURNING id`,
 			[]any{f.Title, doc, o.Out, o.Priority, o.Scale, rect.Min.X, rect.Min.Y, rect.Dx(), rect.Dy(), crop,
-				o.Audit, o.Tile, q.release, q.numbers, string(Queued), columns * lines}, &id)
+				o.Audit, o.Tile, q.release, q.numbers, string(Queued), tilesOf(rect, o.Tile).Count()}, &id)
 		if err != nil {
 			return err
 		}

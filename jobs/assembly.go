@@ -7,6 +7,7 @@ import (
 	"github.com/riverqueue/river/rivertype"
 
 	"leadline/render"
+	"leadline/render/frame"
 )
 
 // doAssembly makes PNG and sidecar from the tiles, then drops them.
@@ -15,7 +16,11 @@ func (w *worker) doAssembly(ctx context.Context, job *rivertype.JobRow, k ticket
 	if err != nil {
 		return err
 	}
-	opt := render.PrintOptions{Out: o.out, Scale: o.scale, Audit: o.audit, Options: render.Options{Workers: w.o.Slots}}
+	how, err := w.q.queued(ctx, o.id)
+	if err != nil {
+		return err
+	}
+	opt := render.PrintOptions{Out: o.out, Scale: o.scale, Audit: o.audit, Queue: how, Options: render.Options{Workers: w.o.Slots}}
 	if o.crop {
 		opt.Crop = &o.rect
 	}
@@ -35,6 +40,18 @@ func (w *worker) doAssembly(ctx context.Context, job *rivertype.JobRow, k ticket
 		}
 	}
 	return nil
+}
+
+// queued is how the queue came to a print's tiles.
+func (q *Queue) queued(ctx context.Context, id int64) (*frame.Queued, error) {
+	var n frame.Queued
+	var ms int64
+	err := one(ctx, q.e.read(), `SELECT p.tiles, p.attempts, p.rescued, count(DISTINCT t.worker),
+		cast(coalesce(sum(t.finished - t.started), 0) as bigint)
+		FROM leadline_print p LEFT JOIN leadline_tile t ON t.print = p.id AND t.state = 'done' AND t.idx >= 0
+		WHERE p.id = ? GROUP BY p.tiles, p.attempts, p.rescued`, []any{id}, &n.Tiles, &n.Attempts, &n.Rescued, &n.Workers, &ms)
+	n.Seconds = float64(max(0, ms)) / 1000 // a clock set back may have made it negative
+	return &n, err
 }
 
 // deliver marks a print done.
@@ -66,10 +83,11 @@ func (w *worker) deliver(ctx context.Context, job *rivertype.JobRow, k ticket, r
 // damaged the others are still looked at, so that all that are can be rendered
 // again together.
 func (q *Queue) rows(ctx context.Context, o *order, sink func([]byte) error) (n render.Counts, err error) {
-	columns, lines := grid(o.rect, o.side)
+	cut := o.cut()
+	columns := cut.Columns()
 	bad := &damage{err: errDamaged}
 	var band *render.Canvas
-	for line := range lines {
+	for line := range cut.Lines() {
 		list, err := q.finished(ctx, o.id, line*columns, (line+1)*columns-1)
 		if err != nil {
 			return n, err
@@ -77,14 +95,13 @@ func (q *Queue) rows(ctx context.Context, o *order, sink func([]byte) error) (n 
 		if len(list) != columns {
 			return n, errGone // tiles were taken back meanwhile
 		}
-		r := tileAt(o.rect, o.side, line*columns)
-		r.Max.X = o.rect.Max.X
+		r := cut.Line(line)
 		if band == nil || band.Rect.Dy() != r.Dy() {
 			band = render.NewCanvas(r)
 		}
 		band.Rect = r
 		for _, k := range list {
-			c, err := q.place(ctx, o, band, k)
+			c, err := q.paste(ctx, o, band, k)
 			switch {
 			case errors.Is(err, errDamaged), errors.Is(err, render.ErrPart):
 				bad.tickets = append(bad.tickets, k.ticket)
@@ -106,8 +123,8 @@ func (q *Queue) rows(ctx context.Context, o *order, sink func([]byte) error) (n 
 	return n, nil
 }
 
-// place puts one kept tile into its place in the band.
-func (q *Queue) place(ctx context.Context, o *order, band *render.Canvas, k kept) (n render.Counts, err error) {
+// paste puts one kept tile into its place in the band.
+func (q *Queue) paste(ctx context.Context, o *order, band *render.Canvas, k kept) (n render.Counts, err error) {
 	if err := ctx.Err(); err != nil {
 		return n, err
 	}
@@ -119,7 +136,7 @@ func (q *Queue) place(ctx context.Context, o *order, band *render.Canvas, k kept
 	if err != nil {
 		return n, err
 	}
-	if p.Rect != tileAt(o.rect, o.side, k.Index) {
+	if p.Rect != o.cut().At(k.Index) {
 		return n, errDamaged // another tile's bytes
 	}
 	stride := p.Rect.Dx() * render.BytesPerPixel

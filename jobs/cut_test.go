@@ -6,36 +6,6 @@ import (
 	"time"
 )
 
-// TestCut covers every rectangle exactly once, in rows from the top.
-func TestCut(t *testing.T) {
-	for _, c := range []struct {
-		r    image.Rectangle
-		side int
-	}{
-		{image.Rect(0, 0, 48, 32), 16}, {image.Rect(-3, -3, 51, 35), 16}, {image.Rect(5, 7, 6, 8), 512},
-		{image.Rect(0, 0, 1000, 700), 512}, {image.Rect(0, 0, 100, 3), 64}, {image.Rect(-9, 4, 100000, 300), 512},
-	} {
-		columns, lines := grid(c.r, c.side)
-		area, at := 0, c.r.Min
-		for i := range columns * lines {
-			r := tileAt(c.r, c.side, i)
-			if r.Min != at || r.Empty() || !r.In(c.r) || r.Dx()*r.Dy() > c.side*c.side {
-				t.Fatalf("%v by %d: tile %d is %v, expected at %v", c.r, c.side, i, r, at)
-			}
-			if line := r.Dy() * c.r.Dx() * pixelBytes; line > bandBytes {
-				t.Fatalf("%v by %d: a row of tiles takes %d bytes", c.r, c.side, line)
-			}
-			area += r.Dx() * r.Dy()
-			if at.X = r.Max.X; at.X == c.r.Max.X {
-				at = image.Pt(c.r.Min.X, r.Max.Y)
-			}
-		}
-		if area != c.r.Dx()*c.r.Dy() || at.Y != c.r.Max.Y {
-			t.Errorf("%v by %d: %d pixels of %d", c.r, c.side, area, c.r.Dx()*c.r.Dy())
-		}
-	}
-}
-
 // TestUsualSide has at least sharing tiles where the print allows it.
 func TestUsualSide(t *testing.T) {
 	for r, want := range map[image.Rectangle]int{

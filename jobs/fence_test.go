@@ -38,7 +38,7 @@ func TestLateCommit(t *testing.T) {
 			t.Errorf("%d attempts, %d rescued", p.Attempts, p.Rescued)
 		}
 		w := q.newWorker(WorkOptions{})
-		if err := w.finish(ctx, nil, ticket{id, 1, 0}, 1, []byte("late"), nil); !errors.Is(err, errLate) {
+		if err := w.finish(ctx, nil, ticket{id, 1, 0}, result{[]byte("late"), nil, 1}, nil); !errors.Is(err, errLate) {
 			t.Errorf("a late commit: %v", err)
 		}
 		whole(t, q, show(t, q, id))

@@ -227,3 +227,13 @@ func frameOf(t *testing.T, path string) *frame.Frame {
 	}
 	return d.Frame
 }
+
+// runOf is what a sidecar says of the queue.
+func runOf(t *testing.T, doc []byte) *frame.Queued {
+	t.Helper()
+	s, err := frame.ParseSidecar(doc)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return s.Run.Queue
+}

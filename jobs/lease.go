@@ -11,11 +11,14 @@ import (
 // not changed for timing.silence is removed, and what its worker held is put
 // back. No wall clock is compared, so a clock that jumps takes no lease.
 
+// tidyEvery is how often a worker clears the spool of what others removed.
+const tidyEvery = 10 * time.Minute
+
 // keep keeps the lease until the context ends, or the queue is drained.
 func (w *worker) keep(ctx context.Context) error {
 	t := w.q.time
 	r := newReaper(w.q, w.id)
-	beat, reap := time.Now(), time.Time{}
+	beat, reap, tidied := time.Now(), time.Time{}, time.Now()
 	tick := time.NewTicker(t.watch)
 	defer tick.Stop()
 	for {
@@ -33,6 +36,10 @@ func (w *worker) keep(ctx context.Context) error {
 		if time.Since(reap) >= t.reap {
 			reap = time.Now()
 			errs = append(errs, r.pass(ctx))
+		}
+		if time.Since(tidied) >= tidyEvery {
+			tidied = time.Now()
+			w.q.tidy(ctx)
 		}
 		err := errors.Join(errs...)
 		if err != nil {

@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"leadline/precision"
+	"leadline/render"
 	"leadline/render/frame"
 	"leadline/render/kernel"
 )
@@ -57,8 +58,8 @@ const iterationBytes = 16 + 2*(48+8)/4
 // tables if it runs to the limit (a Julia set has two), the tiles in hand with
 // their compressed copies, and one row of tiles.
 func memory(r *frame.Resolved, o *order, slots int) int64 {
-	size := tileSize(o.rect, o.side)
-	n := int64(slots)*3*pixelBytes*int64(size.X)*int64(size.Y) + pixelBytes*int64(o.rect.Dx())*int64(size.Y)
+	size := o.cut().Size
+	n := int64(slots)*3*render.BytesPerPixel*int64(size.X)*int64(size.Y) + render.BytesPerPixel*int64(o.rect.Dx())*int64(size.Y)
 	if pixel := r.Height.Ext().Quo(precision.ExtOf(float64(r.Sheet.TrimH))); kernel.Direct(pixel) {
 		return n
 	}

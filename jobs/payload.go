@@ -9,24 +9,31 @@ import (
 	"github.com/riverqueue/river/rivertype"
 )
 
+// result is what a task computed.
+type result struct {
+	payload []byte
+	look    []byte // a tile's part of the thumbnail
+	pixels  int64
+}
+
 // finish ends a task whose result is kept: the payload is written first, then
 // one transaction finds the lease still ours, marks the task done, completes
 // River's job and does what follows. errLate where another try has taken over.
-func (w *worker) finish(ctx context.Context, job *rivertype.JobRow, k ticket, pixels int64, payload []byte, after func(tx, *order) error) error {
+func (w *worker) finish(ctx context.Context, job *rivertype.JobRow, k ticket, r result, after func(tx, *order) error) error {
 	q := w.q
 	file := ""
 	if q.spool != nil {
 		file = k.name()
-		if err := q.spool.put(file, payload); err != nil {
+		if err := q.spool.put(file, r.payload); err != nil {
 			return err
 		}
 	}
-	sum := sha256.Sum256(payload)
+	sum := sha256.Sum256(r.payload)
 	err := persist(ctx, func() error {
 		return q.change(ctx, k.Print, func(t tx, o *order) error {
-			n, err := t.exec(ctx, `UPDATE leadline_tile SET state = 'done', finished = {now}, pixels = ?, file = ?, sum = ?
+			n, err := t.exec(ctx, `UPDATE leadline_tile SET state = 'done', finished = {now}, pixels = ?, look = ?, file = ?, sum = ?
 				WHERE print = ? AND idx = ? AND try = ? AND worker = ? AND state = 'running'`,
-				pixels, file, hex.EncodeToString(sum[:]), k.Print, k.Index, k.Try, w.id)
+				r.pixels, r.look, file, hex.EncodeToString(sum[:]), k.Print, k.Index, k.Try, w.id)
 			if err != nil {
 				return err
 			}
@@ -34,7 +41,7 @@ func (w *worker) finish(ctx context.Context, job *rivertype.JobRow, k ticket, pi
 				return isDone(ctx, t, k, w.id)
 			}
 			if file == "" {
-				if err := store(ctx, t, k, payload); err != nil {
+				if err := store(ctx, t, k, r.payload); err != nil {
 					return err
 				}
 			}

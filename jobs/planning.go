@@ -33,7 +33,7 @@ func (w *worker) doPlan(ctx context.Context, job *rivertype.JobRow, k ticket, o 
 	if err != nil {
 		return err
 	}
-	return w.finish(ctx, job, k, 0, shared, func(t tx, o *order) error {
+	return w.finish(ctx, job, k, result{payload: shared}, func(t tx, o *order) error {
 		if _, err := t.exec(ctx, `UPDATE leadline_print SET frame = ?, began = {now} WHERE id = ?`, frozen, o.id); err != nil {
 			return err
 		}
@@ -50,7 +50,7 @@ func (w *worker) doTile(ctx context.Context, job *rivertype.JobRow, k ticket, o 
 	if err != nil {
 		return err
 	}
-	rect := tileAt(o.rect, o.side, k.Index)
+	rect := o.cut().At(k.Index)
 	c := render.NewCanvas(rect)
 	n, err := p.Tile(ctx, c, rect, o.scale)
 	if err != nil {
@@ -60,7 +60,8 @@ func (w *worker) doTile(ctx context.Context, job *rivertype.JobRow, k ticket, o 
 	if err != nil {
 		return err
 	}
-	return w.finish(ctx, job, k, n.Pixels, b, func(t tx, o *order) error { return w.q.fill(ctx, t, o.id) })
+	look := reduce(o.rect).look(c, p.Space)
+	return w.finish(ctx, job, k, result{b, look, n.Pixels}, func(t tx, o *order) error { return w.q.fill(ctx, t, o.id) })
 }
 
 // plan is a print's plan, made once a process from what was computed once a

@@ -69,8 +69,7 @@ func (q *Queue) measureOne(ctx context.Context, p *Print) error {
 // were finished within elapsed, or the window; sum and squares are of the
 // tiles' times.
 func (p *Progress) estimate(n, pixels int64, elapsed time.Duration, sum, squares float64) {
-	elapsed = min(max(elapsed, time.Millisecond), window)
-	p.Rate = float64(pixels) / elapsed.Seconds()
+	p.Rate = rate(pixels, elapsed)
 	if p.Rate == 0 {
 		return
 	}
@@ -84,33 +83,9 @@ func (p *Progress) estimate(n, pixels int64, elapsed time.Duration, sum, squares
 	p.LeftLow, p.LeftHigh = p.Left*max(0, 1-e), p.Left*(1+e)
 }
 
-// Worker is a process that works on the queue.
-type Worker struct {
-	Name     string    `json:"name"`
-	Host     string    `json:"host"`
-	PID      int       `json:"pid"`
-	Slots    int       `json:"slots"`
-	Release  string    `json:"release"`
-	Numerics int       `json:"numerics"`
-	Started  time.Time `json:"started"`
-	Seen     time.Time `json:"seen"`
-	Running  int       `json:"running"` // tasks in hand
-}
-
-// Workers lists the workers that have a lease.
-func (q *Queue) Workers(ctx context.Context) ([]Worker, error) {
-	var all []Worker
-	err := each(ctx, q.e.read(), `SELECT name, host, pid, slots, release, numerics, started, seen,
-		(SELECT count(*) FROM leadline_tile t WHERE t.worker = w.id AND t.state = 'running')
-		FROM leadline_worker w ORDER BY name, id`, nil, func(scan func(...any) error) error {
-		var w Worker
-		var started, seen int64
-		err := scan(&w.Name, &w.Host, &w.PID, &w.Slots, &w.Release, &w.Numerics, &started, &seen, &w.Running)
-		w.Started, w.Seen = moment(started), moment(seen)
-		all = append(all, w)
-		return err
-	})
-	return all, err
+// rate is that of pixels made within elapsed, or within the window.
+func rate(pixels int64, elapsed time.Duration) float64 {
+	return float64(pixels) / min(max(elapsed, time.Millisecond), window).Seconds()
 }
 
 // alive counts the workers seen lately by River queue.

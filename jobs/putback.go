@@ -10,7 +10,7 @@ import (
 type held struct {
 	by      string // the worker that has it; "": nobody, it is queued
 	fault   string // what the task did to its worker; "": nothing
-	rescued bool   // the worker is gone
+	rescued bool   // the worker is gone, whether or not the task was why
 	discard bool   // its River job will not end by itself
 }
 
@@ -38,16 +38,15 @@ func (q *Queue) putBack(ctx context.Context, k ticket, h held) error {
 		if err != nil || n == 0 {
 			return err
 		}
-		if h.rescued {
-			if _, err := t.exec(ctx, `UPDATE leadline_print SET rescued = rescued + 1 WHERE id = ?`, k.Print); err != nil {
-				return err
-			}
+		var failed bool
+		switch {
+		case h.rescued:
+			failed, err = lose(ctx, t, k, h.by)
+		case h.fault != "":
+			failed, err = blame(ctx, t, k, h.fault)
 		}
-		if h.fault != "" {
-			failed, err := blame(ctx, t, k, h.fault)
-			if failed || err != nil {
-				return err
-			}
+		if failed || err != nil {
+			return err
 		}
 		return q.putFirst(ctx, t, o, k)
 	})
@@ -72,6 +71,27 @@ func (q *Queue) putFirst(ctx context.Context, t tx, o *order, k ticket) error {
 	return q.put(ctx, t, o, 1, k)
 }
 
+// lose counts a task whose worker was lost with it. Workers are lost for
+// reasons of their own, too: a task is held to be the cause, and its print
+// fails, where it was in hand maxFaults times and at half or more of all losses
+// of workers with tasks of this print since its first; in any case at maxLosses.
+func lose(ctx context.Context, t tx, k ticket, worker string) (failed bool, err error) {
+	if _, err := t.exec(ctx, `UPDATE leadline_print SET rescued = rescued + 1 WHERE id = ?`, k.Print); err != nil {
+		return false, err
+	}
+	if _, err := t.exec(ctx, `INSERT INTO leadline_loss (print, idx, worker) VALUES (?, ?, ?)`, k.Print, k.Index, worker); err != nil {
+		return false, err
+	}
+	var own, all int
+	err = one(ctx, t, `SELECT count(DISTINCT CASE WHEN idx = ? THEN worker END), count(DISTINCT worker) FROM leadline_loss
+		WHERE print = ? AND id >= (SELECT min(id) FROM leadline_loss WHERE print = ? AND idx = ?)`,
+		[]any{k.Index, k.Print, k.Print, k.Index}, &own, &all)
+	if err != nil || own < maxFaults || (2*own < all && own < maxLosses) {
+		return false, err
+	}
+	return true, fail(ctx, t, k.Print, fmt.Sprintf("%s was in hand %d times when its worker was lost", k, own), faultHint)
+}
+
 // blame counts a fault of a task, and fails its print where there are too many.
 func blame(ctx context.Context, t tx, k ticket, reason string) (failed bool, err error) {
 	var n int
@@ -80,9 +100,10 @@ func blame(ctx context.Context, t tx, k ticket, reason string) (failed bool, err
 	if err != nil || n < maxFaults {
 		return false, err
 	}
-	return true, fail(ctx, t, k.Print, fmt.Sprintf("%s failed %d times: %s", k, n, reason),
-		"queue again goes on from the tiles that are kept; if the same task fails again report the frame")
+	return true, fail(ctx, t, k.Print, fmt.Sprintf("%s failed %d times: %s", k, n, reason), faultHint)
 }
+
+const faultHint = "queue again goes on from the tiles that are kept; if the same task fails again report the frame"
 
 // discard ends the River job of a task whose worker will not.
 func discard(ctx context.Context, t tx, k ticket) error {

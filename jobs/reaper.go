@@ -119,11 +119,7 @@ func (r *reaper) rescue(ctx context.Context) error {
 	}
 	var errs []error
 	for _, l := range all {
-		h := held{by: l.worker, discard: true}
-		if l.worker != "" {
-			h.rescued, h.fault = true, "its worker was lost"
-		}
-		errs = append(errs, r.q.putBack(ctx, l.ticket, h))
+		errs = append(errs, r.q.putBack(ctx, l.ticket, held{by: l.worker, discard: true, rescued: l.worker != ""}))
 	}
 	return errors.Join(errs...)
 }

@@ -15,7 +15,7 @@ import (
 var migrations embed.FS
 
 // schemaVersion is the last step this release knows.
-const schemaVersion = 1
+const schemaVersion = 2
 
 const migrateHint = "run leadline queue migrate with the same --queue"
 

@@ -84,6 +84,9 @@ func (q *Queue) Again(ctx context.Context, id int64) error {
 		if _, err := t.exec(ctx, `UPDATE leadline_tile SET faults = 0 WHERE print = ?`, id); err != nil {
 			return err
 		}
+		if _, err := t.exec(ctx, `DELETE FROM leadline_loss WHERE print = ?`, id); err != nil {
+			return err
+		}
 		if _, err := t.exec(ctx, `UPDATE leadline_print SET paused = 0, began = {now} WHERE id = ?`, id); err != nil {
 			return err
 		}
@@ -122,6 +125,22 @@ func (q *Queue) Move(ctx context.Context, id int64, priority int) error {
 			(SELECT job FROM leadline_tile WHERE print = ? AND state = 'queued' AND idx <> ?)`, priority, id, assemblyIndex)
 		return err
 	})
+}
+
+// Remove takes a print that is over off the list, with all that is kept of it
+// for Again. What it delivered stays.
+func (q *Queue) Remove(ctx context.Context, id int64) error {
+	err := q.change(ctx, id, func(t tx, o *order) error {
+		if !o.state.over() {
+			return &StateError{fmt.Sprintf("print %d is %s and cannot be removed", id, o.state), "queue cancel gives it up first"}
+		}
+		_, err := t.exec(ctx, `DELETE FROM leadline_print WHERE id = ?`, id) // and its rows in the other tables
+		return err
+	})
+	if err == nil && q.spool != nil {
+		err = q.spool.dropPrint(id) // a worker would tidy it up, some time
+	}
+	return err
 }
 
 // fail ends a print with a reason and, where somebody knows it, a cure.

@@ -20,9 +20,13 @@ var (
 	errDamaged = errors.New("what was kept is damaged")
 )
 
-// maxFaults is how often a task may end its worker, panic or be found damaged
-// before its print fails.
-const maxFaults = 3
+// maxFaults is how often a task may panic, be found damaged or, by the rule of
+// lose, end its worker before its print fails; maxLosses how often its worker
+// may be lost whatever happens to others.
+const (
+	maxFaults = 3
+	maxLosses = 12
+)
 
 // panicError is a panic in a task.
 type panicError struct{ value any }

@@ -5,10 +5,12 @@ import (
 	"image"
 	"sync"
 	"sync/atomic"
+
+	"leadline/render/sheet"
 )
 
 // Sizes of the work: tiles of tileSide pixels square, in bands as high as a
-// tile unless the sheet is so wide that a band would pass bandBytes.
+// tile; lower and wider where a band would pass bandBytes.
 const (
 	tileSide  = 64
 	bandBytes = 24 << 20
@@ -35,8 +37,8 @@ func (p *Plan) Bands(ctx context.Context, r image.Rectangle, k int, o Options, s
 	defer cancel(nil)
 	w := &bandWork{p: p, k: k, o: o, total: int64(r.Dx()) * int64(r.Dy()), fail: cancel}
 	o.tell(PhasePixels, 0, w.total)
-	rows := min(tileSide, max(1, bandBytes/(r.Dx()*BytesPerPixel)))
-	tiles := (r.Dx() + tileSide - 1) / tileSide
+	cut := sheet.Tiles(r, tileSide, bandBytes/BytesPerPixel)
+	tiles := cut.Columns()
 	flight := max(3, 2+(2*o.workers()+tiles-1)/tiles)
 
 	jobs, order := make(chan job), make(chan *band, flight)
@@ -48,7 +50,7 @@ func (p *Plan) Bands(ctx context.Context, r image.Rectangle, k int, o Options, s
 	for range o.workers() {
 		wg.Go(func() { w.work(ctx, jobs) })
 	}
-	wg.Go(func() { feed(ctx, r, rows, free, order, jobs) })
+	wg.Go(func() { feed(ctx, cut, free, order, jobs) })
 	err := drain(ctx, order, free, sink)
 	if err != nil {
 		cancel(err)
@@ -60,25 +62,25 @@ func (p *Plan) Bands(ctx context.Context, r image.Rectangle, k int, o Options, s
 	return w.counts, err
 }
 
-// feed cuts r into bands and tiles, as canvases come free.
-func feed(ctx context.Context, r image.Rectangle, rows int, free <-chan *Canvas, order chan<- *band, jobs chan<- job) {
+// feed hands out bands and their tiles, as canvases come free.
+func feed(ctx context.Context, cut sheet.Tiling, free <-chan *Canvas, order chan<- *band, jobs chan<- job) {
 	defer close(jobs)
 	defer close(order)
-	for y := r.Min.Y; y < r.Max.Y; y += rows {
+	columns := cut.Columns()
+	for line := range cut.Lines() {
 		var c *Canvas
 		select {
 		case c = <-free:
 		case <-ctx.Done():
 			return
 		}
-		c.reset(image.Rect(r.Min.X, y, r.Max.X, min(y+rows, r.Max.Y)))
+		c.reset(cut.Line(line))
 		b := &band{canvas: c, done: make(chan struct{})}
-		b.left.Store(int64((r.Dx() + tileSide - 1) / tileSide))
+		b.left.Store(int64(columns))
 		order <- b // never blocks: no more bands than canvases
-		for x := r.Min.X; x < r.Max.X; x += tileSide {
-			t := image.Rect(x, c.Rect.Min.Y, min(x+tileSide, r.Max.X), c.Rect.Max.Y)
+		for i := range columns {
 			select {
-			case jobs <- job{b, t}:
+			case jobs <- job{b, cut.At(line*columns + i)}:
 			case <-ctx.Done():
 				return
 			}

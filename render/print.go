@@ -39,6 +39,7 @@ type PrintOptions struct {
 	Crop  *image.Rectangle // in the lattice at the wanted scale; nil: everything
 	Scale int              // k of a scale 1/k; 0: 1
 	Audit int              // how many pixels to audit
+	Queue *frame.Queued    // how a queue came to the rows; nil without
 }
 
 // Result is what came out of a print.
@@ -290,7 +291,7 @@ func (q *printer) sidecar(file, hash string, n Counts, audit frame.Audit) *frame
 			Geometry: frame.Geometry{TrimWidth: g.TrimW, TrimHeight: g.TrimH, Bleed: g.Bleed},
 			Counts:   n.record(), Audit: audit},
 		Run: &frame.Run{Started: q.started.UTC().Truncate(time.Second), Host: host, Workers: q.o.workers(), Peak: peakMemory(),
-			Seconds: frame.Seconds{Reference: sec[PhaseReference], Tables: sec[PhaseTables],
+			Queue: q.o.Queue, Seconds: frame.Seconds{Reference: sec[PhaseReference], Tables: sec[PhaseTables],
 				Pixels: sec[PhasePixels] + sec[PhaseSurvey], Colour: sec[PhaseColour], File: sec[PhaseFile],
 				Audit: sec[PhaseAudit], Total: time.Since(q.started).Seconds()}}}
 }

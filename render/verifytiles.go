@@ -5,6 +5,8 @@ import (
 	"image"
 	"math/rand/v2"
 	"slices"
+
+	"leadline/render/sheet"
 )
 
 // tiles renders n random tiles again and compares them with the file, which is
@@ -50,18 +52,16 @@ func (v *verifier) tiles(ctx context.Context, n int, seed uint64) (*Verdict, err
 
 // pick draws n different tiles, sorted from the top.
 func (v *verifier) pick(n int, seed uint64) []image.Rectangle {
-	cols := (v.rect.Dx() + tileSide - 1) / tileSide
-	lines := (v.rect.Dy() + tileSide - 1) / tileSide
+	cut := sheet.Tiling{Rect: v.rect, Size: image.Pt(tileSide, tileSide)}
 	r := rand.New(rand.NewPCG(seed, 0))
-	n = min(n, cols*lines)
+	n = min(n, cut.Count())
 	chosen := map[int]bool{}
 	for len(chosen) < n {
-		chosen[r.IntN(cols*lines)] = true
+		chosen[r.IntN(cut.Count())] = true
 	}
 	var tiles []image.Rectangle
 	for i := range chosen { //leadline:exact sorted below
-		x, y := v.rect.Min.X+i%cols*tileSide, v.rect.Min.Y+i/cols*tileSide
-		tiles = append(tiles, image.Rect(x, y, x+tileSide, y+tileSide).Intersect(v.rect))
+		tiles = append(tiles, cut.At(i))
 	}
 	slices.SortFunc(tiles, func(a, b image.Rectangle) int {
 		if a.Min.Y != b.Min.Y {

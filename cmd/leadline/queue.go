@@ -30,6 +30,7 @@ Actions (leadline help queue ACTION says more)
   resume   go on with paused prints
   cancel   give prints up; finished tiles are kept
   again    go on with failed or cancelled prints
+  remove   take prints that are over off the list
   move     give prints another priority
   migrate  make or update a farm database's tables`,
 		Example: `  leadline queue add tide.frame.json reef.frame.json

@@ -24,6 +24,8 @@ var changes = []change{
 		"Gives prints up. Finished tiles are kept, so that leadline queue again can go on.", "cancelled", (*jobs.Queue).Cancel},
 	{"again", "go on with failed or cancelled prints",
 		"Goes on with failed or cancelled prints from the tiles that are kept.", "queued again", (*jobs.Queue).Again},
+	{"remove", "take prints that are over off the list",
+		"Takes done, failed and cancelled prints off the list, with the tiles kept for\nleadline queue again. Delivered files stay.", "removed", (*jobs.Queue).Remove},
 }
 
 // changeCommands are the actions on prints by their numbers.

@@ -101,6 +101,7 @@ func fullSidecar() *Sidecar {
 		Run: &Run{
 			Started: time.Date(2026, 5, 4, 10, 11, 12, 500e6, time.UTC), Host: "press",
 			Seconds: Seconds{0.09, 0.01, 6.8, 0.2, 0.3, 1.5, 8.9}, Workers: 7, Peak: 123456789,
+			Queue: &Queued{Workers: 3, Tiles: 400, Attempts: 409, Rescued: 7, Seconds: 1234.5},
 		},
 	}
 }

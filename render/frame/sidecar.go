@@ -95,6 +95,16 @@ type Run struct {
 	Seconds Seconds   `json:"seconds"`
 	Workers int       `json:"workers"`
 	Peak    int64     `json:"peak_bytes"`
+	Queue   *Queued   `json:"queue,omitempty"` // nil: one process made it all
+}
+
+// Queued is how a queue came to a print that several processes made.
+type Queued struct {
+	Workers  int64   `json:"workers"`  // processes that finished a tile of it
+	Tiles    int64   `json:"tiles"`    // it was cut into
+	Attempts int64   `json:"attempts"` // at those, the plan and the assembly
+	Rescued  int64   `json:"rescued"`  // attempts taken from workers that fell silent
+	Seconds  float64 `json:"seconds"`  // in finished tiles, whoever made them
 }
 
 // Seconds is the time each part took by the clock.

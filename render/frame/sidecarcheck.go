@@ -105,6 +105,10 @@ func (r *Run) check(c *collector) {
 	}
 	c.whole("run.workers", r.Workers, 0, math.MaxInt32)
 	c.whole64("run.peak_bytes", r.Peak, 0)
+	if q := r.Queue; q != nil {
+		q.table().check(c, "run.queue")
+		c.within("run.queue.seconds", q.Seconds, 0, maxSeconds)
+	}
 }
 
 // whole64 checks a count: from least to MaxWhole.

@@ -96,6 +96,10 @@ func (a *Audit) table() counts {
 		{"equal", &a.Equal}, {"within", &a.Within}, {"failed", &a.Failed}}
 }
 
+func (q *Queued) table() counts {
+	return counts{{"workers", &q.Workers}, {"tiles", &q.Tiles}, {"attempts", &q.Attempts}, {"rescued", &q.Rescued}}
+}
+
 func (t counts) bind(o *object) {
 	for _, e := range t {
 		whole(o, e.key, required, e.to)
@@ -139,5 +143,13 @@ func bindRun(o *object, r *Run) {
 	s.done()
 	whole(o, "workers", required, &r.Workers)
 	whole(o, "peak_bytes", required, &r.Peak)
+	if q := o.object("queue", optional); q != nil {
+		r.Queue = &Queued{}
+		for _, e := range r.Queue.table() {
+			whole(q, e.key, required, e.to)
+		}
+		q.number("seconds", required, &r.Queue.Seconds)
+		q.done()
+	}
 	o.done()
 }
