@@ -6,6 +6,7 @@ import (
 	"time"
 
 	"leadline/render"
+	"leadline/render/words"
 )
 
 const (
@@ -21,9 +22,9 @@ func barLine(p render.Progress, spent time.Duration, columns int, plain bool) st
 	parts := []string{fmt.Sprintf("%-9s", p.Phase), fmt.Sprintf("%3d %%", int(share*100))}
 	switch perSecond, left := rate(p, spent); {
 	case left >= 0 && unitOf(p.Phase) != "":
-		parts = append(parts, clock(left)+" left", quantity(perSecond, unitOf(p.Phase))+"/s")
+		parts = append(parts, words.Clock(left)+" left", words.Quantity(perSecond, unitOf(p.Phase))+"/s")
 	case spent >= 2*time.Second:
-		parts = append(parts, clock(spent.Truncate(time.Second).Seconds())+" so far")
+		parts = append(parts, words.Clock(spent.Truncate(time.Second).Seconds())+" so far")
 	}
 	text := strings.Join(parts, "  ")
 	for len(text) >= columns && len(parts) > 1 {

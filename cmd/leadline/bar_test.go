@@ -60,15 +60,6 @@ func TestBar(t *testing.T) {
 	}
 }
 
-func TestClock(t *testing.T) {
-	for s, want := range map[float64]string{0: "0.0 s", 9.94: "9.9 s", 10: "10 s", 119: "119 s", 120: "2 min 00 s",
-		3725: "62 min 05 s", 7200: "2 h 00 min", 90061: "25 h 01 min"} {
-		if got := clock(s); got != want {
-			t.Errorf("%v s is %q, not %q", s, got, want)
-		}
-	}
-}
-
 // TestHelpFits holds every help screen against the usual terminal's 80
 // columns, and the overview against its 24 lines, one being the prompt's.
 func TestHelpFits(t *testing.T) {

@@ -10,6 +10,7 @@ import (
 
 	"leadline/jobs/parts"
 	"leadline/render"
+	"leadline/render/words"
 )
 
 // which reads --part, which comes with --parts and without --out.
@@ -49,11 +50,11 @@ func reportPart(w io.Writer, d *parts.Done, asJSON bool) error {
 	if asJSON {
 		return json.NewEncoder(w).Encode(d)
 	}
-	how := "rendered in " + clock(d.Seconds)
+	how := "rendered in " + words.Clock(d.Seconds)
 	if !d.Rendered {
 		how = "there already, whole; nothing to do"
 	}
 	_, err := fmt.Fprintf(w, "%s\n  %d x %d px from row %d, %s, %s\n", d.File, d.Pixels.Width, d.Pixels.Height, d.Pixels.Y,
-		byteSize(d.Bytes), how)
+		words.Size(d.Bytes), how)
 	return err
 }

@@ -10,6 +10,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"leadline/jobs"
+	"leadline/render/words"
 )
 
 func queueListCommand() *cobra.Command {
@@ -74,9 +75,9 @@ func leftWords(p *jobs.Print) string {
 	case p.Left <= 0 || p.Paused || p.State != jobs.Rendering:
 		return "-"
 	case p.LeftHigh <= 0:
-		return clock(p.Left)
+		return words.Clock(p.Left)
 	}
-	return fmt.Sprintf("%s (%s to %s)", clock(p.Left), clock(p.LeftLow), clock(p.LeftHigh))
+	return fmt.Sprintf("%s (%s to %s)", words.Clock(p.Left), words.Clock(p.LeftLow), words.Clock(p.LeftHigh))
 }
 
 func queueShowCommand() *cobra.Command {
@@ -130,7 +131,7 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 	row("size", "%d x %d px at 1/%d, priority %d", p.Width, p.Height, p.Scale, p.Priority)
 	row("tiles", "%d of %d, %d tasks begun, %d taken over from silent workers", p.Done, p.Tiles, p.Attempts, p.Rescued)
 	if p.Rate > 0 {
-		row("rate", "%s/s, %s left", quantity(p.Rate, "pixels"), leftWords(p))
+		row("rate", "%s/s, %s left", words.Quantity(p.Rate, "pixels"), leftWords(p))
 	}
 	row("workers", "%d that could work on it (release %s, numerics %d)", p.Progress.Workers, p.Release, p.Numerics)
 	row("added", "%s", p.Added.Local().Format(time.DateTime))
@@ -138,7 +139,7 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 		row("ended", "%s", p.Ended.Local().Format(time.DateTime))
 	}
 	if p.File != "" {
-		row("file", "%s, %s", p.File, byteSize(p.Bytes))
+		row("file", "%s, %s", p.File, words.Size(p.Bytes))
 		row("sidecar", "%s", p.Sidecar)
 		row("sha256", "%s", p.SHA256)
 	}
@@ -161,7 +162,7 @@ func showWorkers(cmd *cobra.Command, asJSON bool) error {
 		t := tabwriter.NewWriter(cmd.OutOrStdout(), 0, 0, 2, ' ', 0)
 		fmt.Fprintln(t, "worker\ttasks\tslots\trelease\tseen")
 		for _, w := range all {
-			fmt.Fprintf(t, "%s\t%d\t%d\t%s\t%s ago\n", w.Name, w.Running, w.Slots, w.Release, clock(max(0, time.Since(w.Seen).Seconds())))
+			fmt.Fprintf(t, "%s\t%d\t%d\t%s\t%s ago\n", w.Name, w.Running, w.Slots, w.Release, words.Clock(max(0, time.Since(w.Seen).Seconds())))
 		}
 		return t.Flush()
 	})
