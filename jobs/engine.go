@@ -21,6 +21,7 @@ type engine interface {
 	do(ctx context.Context, f func(tx) error) error
 	// worker returns a River client that works; Start begins.
 	worker(c *river.Config) (client, error)
+	console(prefix string, log *slog.Logger) (Console, error)
 	migrate(ctx context.Context) error
 	// check says whether the tables are those of this release.
 	check(ctx context.Context) error

@@ -22,7 +22,7 @@ func barLine(p render.Progress, spent time.Duration, columns int, plain bool) st
 	parts := []string{fmt.Sprintf("%-9s", p.Phase), fmt.Sprintf("%3d %%", int(share*100))}
 	switch perSecond, left := rate(p, spent); {
 	case left >= 0 && unitOf(p.Phase) != "":
-		parts = append(parts, words.Clock(left)+" left", words.Quantity(perSecond, unitOf(p.Phase))+"/s")
+		parts = append(parts, words.Clock(left)+" left", words.Amount(perSecond, unitOf(p.Phase))+"/s")
 	case spent >= 2*time.Second:
 		parts = append(parts, words.Clock(spent.Truncate(time.Second).Seconds())+" so far")
 	}
@@ -55,7 +55,7 @@ func leadAt(share float64, width int, plain bool) string {
 func unitOf(phase string) string {
 	switch phase {
 	case render.PhasePixels:
-		return "pixels"
+		return "px"
 	case render.PhaseReference:
 		return "steps"
 	case render.PhaseSurvey, render.PhaseAudit:

@@ -46,9 +46,9 @@ func TestBar(t *testing.T) {
 		want    string
 	}{
 		{half, 0, 80, "pixels    --------------o..............  50 %"},
-		{half, 25 * time.Second, 80, "pixels    --------------o..............  50 %  25 s left  20 k pixels/s"},
-		{half, 25 * time.Second, 60, "pixels    --------o........  50 %  25 s left  20 k pixels/s"},
-		{half, 25 * time.Second, 40, "pixels    -----o......  50 %  25 s left"},
+		{half, 25 * time.Second, 80, "pixels    --------------o..............  50 %  25 s left  20.0 kpx/s"},
+		{half, 25 * time.Second, 60, "pixels    ---------o..........  50 %  25 s left  20.0 kpx/s"},
+		{half, 25 * time.Second, 40, "pixels      50 %  25 s left  20.0 kpx/s"},
 		{half, 25 * time.Second, 28, "pixels      50 %  25 s left"},
 		{half, 25 * time.Second, 20, "pixels      50 %"},
 		{render.Progress{Phase: render.PhasePixels, Total: 9}, 5 * time.Second, 80, "pixels    o............................   0 %  5.0 s so far"},
@@ -63,7 +63,7 @@ func TestBar(t *testing.T) {
 // TestHelpFits holds every help screen against the usual terminal's 80
 // columns, and the overview against its 24 lines, one being the prompt's.
 func TestHelpFits(t *testing.T) {
-	for _, name := range []string{"", "render", "join", "probe", "verify", "version", "completion", "help", "farm"} {
+	for _, name := range []string{"", "render", "join", "board", "probe", "verify", "version", "completion", "help", "farm"} {
 		var out, errs bytes.Buffer
 		args := append([]string{"help"}, strings.Fields(name)...)
 		if code := run(context.Background(), args, &out, &errs); code != exitDone || errs.Len() > 0 {

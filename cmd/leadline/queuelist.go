@@ -131,7 +131,7 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 	row("size", "%d x %d px at 1/%d, priority %d", p.Width, p.Height, p.Scale, p.Priority)
 	row("tiles", "%d of %d, %d tasks begun, %d taken over from silent workers", p.Done, p.Tiles, p.Attempts, p.Rescued)
 	if p.Rate > 0 {
-		row("rate", "%s/s, %s left", words.Quantity(p.Rate, "pixels"), leftWords(p))
+		row("rate", "%s/s, %s left", words.Amount(p.Rate, "px"), leftWords(p))
 	}
 	row("workers", "%d that could work on it (release %s, numerics %d)", p.Progress.Workers, p.Release, p.Numerics)
 	row("added", "%s", p.Added.Local().Format(time.DateTime))

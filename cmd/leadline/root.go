@@ -40,7 +40,7 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	help := helpCommand()
 	root.SetHelpCommand(help)
 	root.CompletionOptions.DisableDefaultCmd = true // we have our own
-	root.AddCommand(renderCommand(), joinCommand(), queueCommand(), workCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help, farmTopic())
+	root.AddCommand(renderCommand(), joinCommand(), queueCommand(), workCommand(), boardCommand(), probeCommand(), verifyCommand(), versionCommand(), completionCommand(), help, farmTopic())
 	addHelpFlag(root)
 	return root
 }

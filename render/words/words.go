@@ -22,17 +22,6 @@ func Size(bytes int64) string {
 	}
 }
 
-// Quantity writes a large number of some unit, such as a rate.
-func Quantity(v float64, unit string) string {
-	switch {
-	case v >= 1e6:
-		return fmt.Sprintf("%.1f M %s", v/1e6, unit)
-	case v >= 1e4:
-		return fmt.Sprintf("%.0f k %s", v/1e3, unit)
-	}
-	return fmt.Sprintf("%.0f %s", v, unit)
-}
-
 // Clock writes a time of so many seconds.
 func Clock(seconds float64) string {
 	switch d := time.Duration(seconds * float64(time.Second)); {
