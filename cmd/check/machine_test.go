@@ -161,9 +161,19 @@ func TestStoppedCommand(t *testing.T) {
 		t.Skip("there are no process groups to stop on this system")
 	}
 	dir := t.TempDir()
-	ctx, cancel := context.WithTimeout(t.Context(), 300*time.Millisecond)
+	ctx, cancel := context.WithCancel(t.Context())
 	defer cancel()
-	start := time.Now()
+	var start time.Time // of the stopping, once the command has begun
+	go func() {
+		for range 1000 {
+			if _, err := os.Stat(filepath.Join(dir, "begun")); err == nil {
+				break
+			}
+			time.Sleep(10 * time.Millisecond)
+		}
+		start = time.Now()
+		cancel()
+	}()
 	err := command{dir: dir, args: []string{"sh", "-c", "touch begun; (sleep 1; touch survived) & wait"}}.run(ctx, nil, nil)
 	if err == nil || time.Since(start) > grace {
 		t.Errorf("error %v after %v, want an early end", err, time.Since(start))
