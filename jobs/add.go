@@ -4,10 +4,12 @@ import (
 	"context"
 	"fmt"
 	"image"
+	"os"
 	"path/filepath"
 
 	"leadline/render"
 	"leadline/render/frame"
+	"leadline/render/printfile"
 )
 
 // AddOptions say how a frame is to be printed. Out is required; the zero value
@@ -19,6 +21,7 @@ type AddOptions struct {
 	Crop     *image.Rectangle // in the lattice at that scale; nil: everything
 	Audit    int              // how many pixels to audit
 	Tile     int              // side of a tile in pixels; 0: 512, less for small prints
+	Replace  bool             // another print under that path may be written over
 }
 
 // DefaultPriority of a print.
@@ -49,6 +52,9 @@ func (q *Queue) Add(ctx context.Context, f *frame.Frame, o AddOptions) (int64, e
 	if err != nil {
 		return 0, fmt.Errorf("queueing the frame: %w", err)
 	}
+	if err := q.room(ctx, o); err != nil {
+		return 0, err
+	}
 	crop := 0
 	if o.Crop != nil {
 		crop = 1
@@ -66,6 +72,38 @@ func (q *Queue) Add(ctx context.Context, f *frame.Frame, o AddOptions) (int64, e
 		return q.fill(ctx, t, id)
 	})
 	return id, err
+}
+
+// TakenError refuses a path where another print is, or will be.
+type TakenError struct{ What, Cure string }
+
+func (e *TakenError) Error() string { return e.What }
+
+// Hint says how to get the print all the same.
+func (e *TakenError) Hint() string { return e.Cure }
+
+// room refuses a path that is taken, by a file or by another print of the queue,
+// unless it may be replaced; and where the adder's disk is the worker's, one that
+// cannot be written. A print of days must not find that out at its end.
+func (q *Queue) room(ctx context.Context, o AddOptions) error {
+	if q.e.local() {
+		if err := printfile.Try(o.Out); err != nil {
+			return err
+		}
+	}
+	if o.Replace {
+		return nil
+	}
+	if _, err := os.Lstat(o.Out); err == nil {
+		return &TakenError{o.Out + " is there already", "--replace writes over it when the new print is done; or give another --out"}
+	}
+	var id int64
+	err := one(ctx, q.e.read(), `SELECT coalesce(max(id), 0) FROM leadline_print WHERE out = ?
+		AND state IN ('queued', 'planning', 'rendering', 'assembling')`, []any{o.Out}, &id)
+	if err == nil && id > 0 {
+		return &TakenError{fmt.Sprintf("print %d of the queue will be %s", id, o.Out), "--replace queues it all the same; or give another --out"}
+	}
+	return err
 }
 
 // complete fills in defaults and refuses what is out of range.

@@ -33,6 +33,7 @@ func (w *worker) doAssembly(ctx context.Context, job *rivertype.JobRow, k ticket
 	if err := persist(ctx, func() error { return w.deliver(ctx, job, k, r) }); err != nil {
 		return err
 	}
+	w.say("print %d is done: %s", o.id, r.File)
 	w.plans.drop(o.id)
 	if w.q.spool != nil {
 		if err := w.q.spool.dropPrint(o.id); err != nil {

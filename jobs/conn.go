@@ -4,12 +4,14 @@ import (
 	"context"
 	"database/sql"
 	"errors"
+	"slices"
 	"strconv"
 	"strings"
 	"sync"
 
 	"github.com/jackc/pgx/v5"
 	"github.com/jackc/pgx/v5/pgconn"
+	"modernc.org/sqlite"
 )
 
 // conn runs queries, inside a transaction or outside. Queries are written once,
@@ -42,6 +44,22 @@ func (e *storeError) Unwrap() error { return e.err }
 // Hint says what to look at.
 func (e *storeError) Hint() string {
 	return "check the database, its disk, and the way to it; nothing that was finished is lost"
+}
+
+// refuses says whether the database is there and does not want to: waiting will
+// not help. The codes are PostgreSQL's class 42 (appendix A of its manual:
+// syntax error or access rule violation) and SQLite's primary result codes
+// PERM, READONLY, CORRUPT and NOTADB.
+func refuses(err error) bool {
+	var p *pgconn.PgError
+	var s *sqlite.Error
+	switch {
+	case errors.As(err, &p):
+		return strings.HasPrefix(p.Code, "42")
+	case errors.As(err, &s):
+		return slices.Contains([]int{3, 8, 11, 26}, s.Code()&0xff)
+	}
+	return false
 }
 
 // one reads the only row of a query.

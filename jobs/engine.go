@@ -5,6 +5,8 @@ import (
 	"errors"
 	"fmt"
 	"log/slog"
+	"maps"
+	"slices"
 	"time"
 
 	"github.com/riverqueue/river"
@@ -25,6 +27,8 @@ type engine interface {
 	migrate(ctx context.Context) error
 	// check says whether the tables are those of this release.
 	check(ctx context.Context) error
+	// local says that the queue lies on this machine's own disk.
+	local() bool
 	close()
 }
 
@@ -60,8 +64,9 @@ type base[T any] struct {
 	closing func()
 }
 
-func (b *base[T]) read() conn { return b.plain }
-func (b *base[T]) close()     { b.closing() }
+func (b *base[T]) read() conn  { return b.plain }
+func (b *base[T]) local() bool { return b.tables == "sqlite" }
+func (b *base[T]) close()      { b.closing() }
 
 func (b *base[T]) migrate(ctx context.Context) error { return b.update(ctx) }
 
@@ -136,12 +141,23 @@ func (b *base[T]) riverState(ctx context.Context) error {
 	if err != nil {
 		return err
 	}
-	r, err := m.Validate(ctx, nil)
-	if err != nil {
-		return fmt.Errorf("reading River's migrations: %w", err)
+	missing := map[int]bool{}
+	for _, v := range m.AllVersions() {
+		missing[v.Version] = true
 	}
-	if !r.OK {
-		return &SchemaError{What: "River's tables are those of another release: " + fmt.Sprint(r.Messages), Cure: migrateHint}
+	// River's own Validate begins a transaction, and would wait here for writers.
+	err = each(ctx, b.plain, `SELECT version FROM river_migration WHERE line = 'main'`, nil, func(scan func(...any) error) error {
+		var n int
+		err := scan(&n)
+		delete(missing, n)
+		return err
+	})
+	if err != nil {
+		return err
+	}
+	if len(missing) > 0 {
+		return &SchemaError{What: fmt.Sprintf("River's tables are those of another release: steps %v are missing", slices.Sorted(maps.Keys(missing))),
+			Cure: migrateHint}
 	}
 	return nil
 }

@@ -49,11 +49,19 @@ func TestFailures(t *testing.T) {
 		q := d.open(t)
 		ctx := t.Context()
 		gone := filepath.Join(t.TempDir(), "gone")
+		if err := os.Mkdir(gone, 0o700); err != nil {
+			t.Fatal(err)
+		}
 		folder, broken := add(t, q, AddOptions{Out: filepath.Join(gone, "a.png")}), add(t, q, AddOptions{})
 		if _, err := q.e.read().exec(ctx, `UPDATE leadline_print SET frame = '{"format":"leadline.frame/1"}' WHERE id = ?`, broken); err != nil {
 			t.Fatal(err)
 		}
-		if err := q.Work(ctx, WorkOptions{Slots: 1, Drain: true}); err != nil {
+		// The folder goes while tiles are rendered.
+		if err := q.Work(ctx, WorkOptions{Slots: 1, Drain: true, before: func(_ context.Context, k ticket) {
+			if k.Print == folder && k.Index == 1 {
+				_ = os.RemoveAll(gone)
+			}
+		}}); err != nil {
 			t.Fatal(err)
 		}
 		for id, want := range map[int64]string{folder: "gone", broken: "set"} {

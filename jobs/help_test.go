@@ -137,7 +137,9 @@ func show(t testing.TB, q *Queue, id int64) *Print {
 // until waits for a print to become what ok asks for.
 func until(t testing.TB, q *Queue, id int64, what string, ok func(*Print) bool) *Print {
 	t.Helper()
-	for end := time.Now().Add(25 * time.Second); ; time.Sleep(10 * time.Millisecond) {
+	wait := 5 * time.Millisecond
+	for end := time.Now().Add(time.Minute); ; time.Sleep(wait) {
+		wait = min(wait*5/4, 100*time.Millisecond) // looking costs as much as a small tile
 		p := show(t, q, id)
 		if ok(p) {
 			return p

@@ -3,6 +3,7 @@ package jobs
 import (
 	"context"
 	"errors"
+	"maps"
 	"time"
 )
 
@@ -11,15 +12,18 @@ import (
 // not changed for timing.silence is removed, and what its worker held is put
 // back. No wall clock is compared, so a clock that jumps takes no lease.
 
-// tidyEvery is how often a worker clears the spool of what others removed.
-const tidyEvery = 10 * time.Minute
+const (
+	// tidyEvery is how often a worker clears the spool of what others removed.
+	tidyEvery = 10 * time.Minute
+	// roundTime bounds a round of queries: a connection on which no answer comes
+	// is given up, and the next round makes another.
+	roundTime = 15 * time.Second
+)
 
 // keep keeps the lease until the context ends, or the queue is drained.
 func (w *worker) keep(ctx context.Context) error {
-	t := w.q.time
-	r := newReaper(w.q, w.id)
-	beat, reap, tidied := time.Now(), time.Time{}, time.Now()
-	tick := time.NewTicker(t.watch)
+	r := &rounds{reaper: newReaper(w.q, w.id), strays: map[ticket]bool{}, beat: time.Now(), tidied: time.Now()}
+	tick := time.NewTicker(w.q.time.watch)
 	defer tick.Stop()
 	for {
 		select {
@@ -27,21 +31,7 @@ func (w *worker) keep(ctx context.Context) error {
 			return ctx.Err()
 		case <-tick.C:
 		}
-		var errs []error
-		if time.Since(beat) >= t.beat {
-			beat = time.Now()
-			errs = append(errs, w.beat(ctx))
-		}
-		errs = append(errs, w.watch(ctx))
-		if time.Since(reap) >= t.reap {
-			reap = time.Now()
-			errs = append(errs, r.pass(ctx))
-		}
-		if time.Since(tidied) >= tidyEvery {
-			tidied = time.Now()
-			w.q.tidy(ctx)
-		}
-		err := errors.Join(errs...)
+		err := w.round(ctx, r)
 		if err != nil {
 			w.q.log.Warn("keeping the lease", "error", err)
 		}
@@ -51,6 +41,35 @@ func (w *worker) keep(ctx context.Context) error {
 			}
 		}
 	}
+}
+
+// rounds is what keep has in mind between rounds.
+type rounds struct {
+	reaper             *reaper
+	strays             map[ticket]bool
+	beat, reap, tidied time.Time // when that was done last
+}
+
+// round does what is due.
+func (w *worker) round(ctx context.Context, r *rounds) error {
+	ctx, cancel := context.WithTimeout(ctx, roundTime)
+	defer cancel()
+	t := w.q.time
+	var errs []error
+	if time.Since(r.beat) >= t.beat {
+		r.beat = time.Now()
+		errs = append(errs, w.beat(ctx))
+	}
+	errs = append(errs, w.watch(ctx))
+	if time.Since(r.reap) >= t.reap {
+		r.reap = time.Now()
+		errs = append(errs, r.reaper.pass(ctx), w.stray(ctx, r.strays))
+	}
+	if time.Since(r.tidied) >= tidyEvery {
+		r.tidied = time.Now()
+		w.q.tidy(ctx)
+	}
+	return errors.Join(errs...)
 }
 
 // beat gives a sign of life, and registers the worker where it is not.
@@ -100,6 +119,36 @@ func (w *worker) watch(ctx context.Context) error {
 		}
 	}
 	return errors.Join(err, w.forget(ctx))
+}
+
+// stray puts back the tasks that River gave to this worker and that never
+// arrived, as when the database's answer is lost on the way: River would count
+// them as running for ever. A task must be found so twice, as it may just be
+// arriving; strays holds those found before.
+func (w *worker) stray(ctx context.Context, strays map[ticket]bool) error {
+	all, err := tickets(ctx, w.q.e.read(), `SELECT t.print, t.idx, t.try FROM leadline_tile t JOIN river_job j ON j.id = t.job
+		WHERE t.state = 'queued' AND j.state = 'running' AND {by} = ?`, w.id)
+	if err != nil {
+		return err
+	}
+	before := maps.Clone(strays)
+	clear(strays)
+	for _, k := range all {
+		switch {
+		case w.holds(k):
+		case before[k]:
+			err = errors.Join(err, w.q.putBack(ctx, k, held{discard: true}))
+		default:
+			strays[k] = true
+		}
+	}
+	return err
+}
+
+func (w *worker) holds(k ticket) bool {
+	w.mu.Lock()
+	defer w.mu.Unlock()
+	return w.held[k] != nil
 }
 
 // inHand lists the tasks whose lease is entered.

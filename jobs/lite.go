@@ -5,9 +5,11 @@ import (
 	"database/sql"
 	"errors"
 	"fmt"
+	"io/fs"
 	"net/url"
 	"os"
 	"path/filepath"
+	"time"
 
 	"github.com/riverqueue/river/riverdriver/riversqlite"
 	_ "modernc.org/sqlite" // the database of the desk
@@ -15,12 +17,15 @@ import (
 
 // pragmas let any number of processes share the file: writers wait for each
 // other, and every commit is on the disk when it returns.
-const pragmas = "_pragma=busy_timeout(10000)&_pragma=journal_mode(WAL)&_pragma=synchronous(FULL)" +
+const pragmas = "_pragma=busy_timeout(%d)&_pragma=journal_mode(WAL)&_pragma=synchronous(FULL)" +
 	"&_pragma=foreign_keys(1)&_txlock=immediate"
+
+// busyTime is how long a writer waits for another at a time.
+const busyTime = 10 * time.Second
 
 // openLite opens, and makes where missing, the queue in an SQLite file. Folder
 // and file are the owner's alone.
-func openLite(ctx context.Context, path string) (engine, error) {
+func openLite(ctx context.Context, path string, busy time.Duration) (engine, error) {
 	path, err := filepath.Abs(path)
 	if err != nil {
 		return nil, fmt.Errorf("opening the queue: %w", err)
@@ -28,12 +33,10 @@ func openLite(ctx context.Context, path string) (engine, error) {
 	if err := os.MkdirAll(filepath.Dir(path), 0o700); err != nil {
 		return nil, fmt.Errorf("making the queue's folder: %w", err)
 	}
-	f, err := os.OpenFile(path, os.O_RDWR|os.O_CREATE, 0o600) // SQLite's other files take over its mode
-	if err != nil {
+	if err := touch(path); err != nil {
 		return nil, fmt.Errorf("opening the queue: %w", err)
 	}
-	f.Close()
-	u := url.URL{Scheme: "file", Path: path, RawQuery: pragmas}
+	u := url.URL{Scheme: "file", Path: path, RawQuery: fmt.Sprintf(pragmas, busy.Milliseconds())}
 	db, err := sql.Open("sqlite", u.String())
 	if err != nil {
 		return nil, fmt.Errorf("opening the queue: %w", err)
@@ -46,6 +49,20 @@ func openLite(ctx context.Context, path string) (engine, error) {
 		return nil, fmt.Errorf("%s: %w", path, err)
 	}
 	return e, nil
+}
+
+// touch makes the file where it is missing; SQLite's other files take over its
+// mode. One that is there must not be opened: closing it would end all locks
+// that this process has on it (fcntl(2)), those of another Queue too.
+func touch(path string) error {
+	f, err := os.OpenFile(path, os.O_RDWR|os.O_CREATE|os.O_EXCL, 0o600)
+	if errors.Is(err, fs.ErrExist) {
+		return nil
+	}
+	if err != nil {
+		return err
+	}
+	return f.Close()
 }
 
 func newLite(ctx context.Context, db *sql.DB) (engine, error) {

@@ -1,10 +1,10 @@
 package jobs
 
 import (
+	"cmp"
 	"context"
 	"fmt"
 	"log/slog"
-	"os"
 	"path/filepath"
 	"strings"
 	"time"
@@ -19,6 +19,8 @@ type Options struct {
 	// that is given one must be given the same.
 	Spool string
 	Log   *slog.Logger // what River and the workers say; nil: nothing
+
+	busy time.Duration // tests: how long SQLite waits for a lock; 0: busyTime
 }
 
 // Queue is an open queue, safe for any number of goroutines and processes.
@@ -52,7 +54,14 @@ func Open(ctx context.Context, where string, o Options) (*Queue, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := q.e.check(ctx); err != nil {
+	err = q.e.check(ctx)
+	if err == nil && q.spool != nil {
+		var name string
+		if err = one(ctx, q.e.read(), `SELECT id FROM leadline_name`, nil, &name); err == nil {
+			err = q.spool.claim(name)
+		}
+	}
+	if err != nil {
 		q.Close()
 		return nil, err
 	}
@@ -84,7 +93,7 @@ func open(ctx context.Context, where string, o Options) (*Queue, error) {
 		if o.Spool == "" {
 			o.Spool = strings.TrimSuffix(path, filepath.Ext(path)) + ".spool"
 		}
-		q.e, err = openLite(ctx, path)
+		q.e, err = openLite(ctx, path, cmp.Or(o.busy, busyTime))
 	} else {
 		var b engine
 		b, err = openFarm(ctx, where)
@@ -135,22 +144,11 @@ func split(where string) (path string, isFile bool, err error) {
 	return where, true, nil
 }
 
-// desk is the file of the desk's own queue, in a folder of the user's alone.
+// desk is the file of the desk's own queue.
 func desk() (string, error) {
-	state := os.Getenv("XDG_STATE_HOME")
-	if !filepath.IsAbs(state) { // relative ones are invalid: XDG Base Directory Specification
-		home, err := os.UserHomeDir()
-		if err != nil {
-			return "", fmt.Errorf("finding the queue's folder: %w", err)
-		}
-		state = filepath.Join(home, ".local", "state")
-	}
-	dir := filepath.Join(state, "leadline")
-	if err := os.MkdirAll(dir, 0o700); err != nil {
-		return "", fmt.Errorf("making the queue's folder: %w", err)
-	}
-	if err := os.Chmod(dir, 0o700); err != nil {
-		return "", fmt.Errorf("keeping the queue's folder private: %w", err)
+	dir, err := StateFolder()
+	if err != nil {
+		return "", err
 	}
 	return filepath.Join(dir, "queue.db"), nil
 }

@@ -17,10 +17,14 @@ const migrateLock = 0x6c6561646c696e65 // "leadline"
 // openPostgres opens a queue in a PostgreSQL database. TLS, services and
 // password files are taken from the URL and the environment as libpq does.
 func openPostgres(ctx context.Context, where string) (*base[pgx.Tx], error) {
+	if err := checkPasswords(where); err != nil {
+		return nil, err
+	}
 	c, err := pgxpool.ParseConfig(where)
 	if err != nil {
 		return nil, &AddressError{"the queue's address is not a PostgreSQL URL that can be used"} // pgx's words repeat the address
 	}
+	patience(c)
 	pool, err := pgxpool.NewWithConfig(ctx, c)
 	if err != nil {
 		return nil, fmt.Errorf("opening the queue: %w", err)
@@ -77,22 +81,6 @@ func redacted(where string) string {
 		return "the database"
 	}
 	return u.Redacted()
-}
-
-// ReachError says that a database does not answer.
-type ReachError struct {
-	Where string // without a password
-	Err   error
-}
-
-func (e *ReachError) Error() string { return fmt.Sprintf("the queue at %s: %v", e.Where, e.Err) }
-
-// Unwrap returns the cause.
-func (e *ReachError) Unwrap() error { return e.Err }
-
-// Hint says what to look at.
-func (e *ReachError) Hint() string {
-	return "check that the server runs, and the address's host, port, user and database; passwords may stand in ~/.pgpass"
 }
 
 // AddressError refuses an address of a queue.

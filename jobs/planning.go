@@ -9,6 +9,7 @@ import (
 	"github.com/riverqueue/river/rivertype"
 
 	"leadline/render"
+	"leadline/render/printfile"
 )
 
 // doPlan computes what a print's tiles share, freezes the frame and lets the
@@ -18,8 +19,8 @@ func (w *worker) doPlan(ctx context.Context, job *rivertype.JobRow, k ticket, o 
 	if err != nil {
 		return err
 	}
-	if err := w.o.Limits.check(f, o, w.o.Slots); err != nil {
-		return err
+	if err := printfile.Try(o.out); err != nil {
+		return err // rather than when everything is rendered
 	}
 	p, err := render.NewPlan(ctx, f, render.Options{Workers: w.o.Slots})
 	if err != nil {

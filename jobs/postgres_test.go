@@ -8,6 +8,7 @@ import (
 	"os"
 	"os/exec"
 	"path/filepath"
+	"slices"
 	"sync"
 	"testing"
 	"time"
@@ -20,12 +21,15 @@ import (
 type server struct {
 	bin, dir string
 	port     int
+	more     []string // arguments of the server
+	under    []string // a command that runs it
 	cmd      *exec.Cmd
 }
 
 var (
 	errNoPostgres = errors.New("package postgresql is not installed")
 	sharedServer  = sync.OnceValues(startServer)
+	emptyCluster  = sync.OnceValues(makeCluster)
 	serversInUse  []*server // for TestMain to stop
 	databases     struct {
 		sync.Mutex
@@ -35,28 +39,60 @@ var (
 
 // startServer makes a cluster and runs it.
 func startServer() (*server, error) {
-	found, err := filepath.Glob("/usr/lib/postgresql/*/bin/initdb")
-	if err != nil || len(found) == 0 {
-		return nil, errNoPostgres
+	s, err := newServer()
+	if err != nil {
+		return nil, err
 	}
+	return s, s.start()
+}
+
+// newServer is a server on a copy of an empty cluster. By default nothing is
+// made to last (-F).
+func newServer() (*server, error) {
+	from, err := emptyCluster()
+	if err != nil {
+		return nil, err
+	}
+	s, err := newFolder(from.bin)
+	if err != nil {
+		return nil, err
+	}
+	if out, err := exec.Command("cp", "-a", filepath.Join(from.dir, "data"), s.dir).CombinedOutput(); err != nil {
+		return nil, fmt.Errorf("copying a cluster: %w: %s", err, out)
+	}
+	return s, nil
+}
+
+// newFolder is a server without a cluster. TestMain removes it.
+func newFolder(bin string) (*server, error) {
 	dir, err := os.MkdirTemp("", "leadline-pg")
 	if err != nil {
 		return nil, err
 	}
-	s := &server{bin: filepath.Dir(found[len(found)-1]), dir: dir}
+	s := &server{bin: bin, dir: dir, more: []string{"-F"}}
 	databases.Lock()
+	defer databases.Unlock()
 	serversInUse = append(serversInUse, s)
-	databases.Unlock()
-	if err := unprivileged(dir); err != nil {
+	return s, unprivileged(dir)
+}
+
+// makeCluster makes an empty cluster.
+func makeCluster() (*server, error) {
+	found, err := filepath.Glob("/usr/lib/postgresql/*/bin/initdb")
+	if err != nil || len(found) == 0 {
+		return nil, errNoPostgres
+	}
+	s, err := newFolder(filepath.Dir(found[len(found)-1]))
+	if err != nil {
 		return nil, err
 	}
-	init := exec.Command(filepath.Join(s.bin, "initdb"), "-D", filepath.Join(dir, "data"), "-U", "maker", "-A", "trust", "-N", "-E", "UTF8", "--locale=C")
+	init := exec.Command(filepath.Join(s.bin, "initdb"), "-D", filepath.Join(s.dir, "data"), "-U", "maker", "-A", "trust", "-N", "-E", "UTF8", "--locale=C")
 	lower(init)
-	init.Dir = dir
+	init.Dir = s.dir
 	if out, err := init.CombinedOutput(); err != nil {
 		return nil, fmt.Errorf("initdb: %w: %s", err, out)
 	}
-	return s, s.start()
+	return s, nil
 }
 
 // start runs the server and waits until it answers.
@@ -69,9 +105,13 @@ func (s *server) start() error {
 		s.port = l.Addr().(*net.TCPAddr).Port
 		l.Close()
 	}
-	s.cmd = exec.Command(filepath.Join(s.bin, "postgres"), "-D", filepath.Join(s.dir, "data"), "-h", "127.0.0.1",
-		"-p", fmt.Sprint(s.port), "-k", s.dir, "-F", "-c", "max_connections=200")
-	lower(s.cmd)
+	line := append(slices.Clone(s.under), filepath.Join(s.bin, "postgres"), "-D", filepath.Join(s.dir, "data"), "-h", "127.0.0.1",
+		"-p", fmt.Sprint(s.port), "-k", s.dir, "-c", "max_connections=200")
+	line = append(line, s.more...)
+	s.cmd = exec.Command(line[0], line[1:]...)
+	if s.under == nil {
+		lower(s.cmd)
+	}
 	s.cmd.Dir = s.dir
 	if err := s.cmd.Start(); err != nil {
 		return err
@@ -79,7 +119,7 @@ func (s *server) start() error {
 	var err error
 	for range 200 {
 		var c *pgx.Conn
-		if c, err = pgx.Connect(context.Background(), s.url("postgres")); err == nil {
+		if c, err = pgx.Connect(context.Background(), s.local("postgres")); err == nil {
 			return c.Close(context.Background())
 		}
 		time.Sleep(50 * time.Millisecond)
@@ -102,6 +142,11 @@ func (s *server) stop() error {
 
 func (s *server) url(database string) string {
 	return fmt.Sprintf("postgres://maker@127.0.0.1:%d/%s?sslmode=disable", s.port, database)
+}
+
+// local is an address on this machine, whatever its network.
+func (s *server) local(database string) string {
+	return fmt.Sprintf("postgres:///%s?host=%s&port=%d&user=maker", database, s.dir, s.port)
 }
 
 // postgres is the server that tests share.

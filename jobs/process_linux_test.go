@@ -2,6 +2,7 @@ package jobs
 
 import (
 	"bufio"
+	"cmp"
 	"context"
 	"flag"
 	"fmt"
@@ -9,6 +10,7 @@ import (
 	"os/exec"
 	"os/user"
 	"strconv"
+	"strings"
 	"syscall"
 	"testing"
 	"time"
@@ -52,6 +54,8 @@ const (
 	childHang  = "LEADLINE_TEST_HANG"
 	childQuick = "LEADLINE_TEST_QUICK"
 	childSlow  = "LEADLINE_TEST_SLOW"
+	childHold  = "LEADLINE_TEST_HOLD"
+	childName  = "LEADLINE_TEST_NAME"
 )
 
 // TestMain is also the main function of the worker processes.
@@ -77,8 +81,8 @@ func TestMain(m *testing.M) {
 	os.Exit(code)
 }
 
-// child works, naming each task as it begins; it hangs in one tile, or takes
-// its time over each.
+// child works, naming each task as it begins; it hangs in one tile, takes its
+// time over each, or stops itself inside a transaction.
 func child(where string) error {
 	ctx := context.Background()
 	q, err := Open(ctx, where, Options{})
@@ -95,8 +99,17 @@ func child(where string) error {
 			return err
 		}
 	}
-	return q.Work(ctx, WorkOptions{Slots: 1, Drain: true, Name: "child", before: func(ctx context.Context, k ticket) {
+	name := cmp.Or(os.Getenv(childName), "child")
+	return q.Work(ctx, WorkOptions{Slots: 1, Drain: true, Name: name, before: func(ctx context.Context, k ticket) {
 		fmt.Println("begin", k.Index)
+		if fmt.Sprint(k.Index) == os.Getenv(childHold) {
+			err := q.change(ctx, k.Print, func(tx, *order) error {
+				fmt.Println("holding")
+				defer time.Sleep(100 * time.Millisecond) // the signal reaches this thread a little later
+				return syscall.Kill(os.Getpid(), syscall.SIGSTOP)
+			})
+			fmt.Println("held", err == nil)
+		}
 		if fmt.Sprint(k.Index) == hang {
 			<-ctx.Done()
 			fmt.Println("stopped", k.Index)
@@ -107,20 +120,25 @@ func child(where string) error {
 
 // process is a worker process.
 type process struct {
-	t     *testing.T
+	t     testing.TB
 	cmd   *exec.Cmd
 	lines *bufio.Scanner
 }
 
 // spawn starts a worker process.
-func spawn(t *testing.T, d database, env ...string) *process {
+func spawn(t testing.TB, d database, env ...string) *process {
 	t.Helper()
 	self, err := os.Executable()
 	if err != nil {
 		t.Fatal(err)
 	}
-	c := exec.Command(self)
-	c.Env = append(os.Environ(), append(env, childWhere+"="+d.where)...)
+	return run(t, exec.Command(self), append(env, childWhere+"="+d.where)...)
+}
+
+// run starts a command that ends in a worker process.
+func run(t testing.TB, c *exec.Cmd, env ...string) *process {
+	t.Helper()
+	c.Env = append(os.Environ(), env...)
 	c.Stderr = os.Stderr
 	c.SysProcAttr = &syscall.SysProcAttr{Pdeathsig: syscall.SIGKILL}
 	out, err := c.StdoutPipe()
@@ -144,6 +162,30 @@ func (p *process) says(want string) {
 		}
 	}
 	p.t.Fatalf("the worker never said %q", want)
+}
+
+// stopped waits until the process has been stopped: proc(5), field 3.
+func (p *process) stopped() {
+	p.t.Helper()
+	for range 500 {
+		b, err := os.ReadFile(fmt.Sprintf("/proc/%d/stat", p.cmd.Process.Pid))
+		if err != nil {
+			p.t.Fatal(err)
+		}
+		if _, rest, ok := strings.Cut(string(b), ") "); ok && strings.HasPrefix(rest, "T") {
+			return
+		}
+		time.Sleep(10 * time.Millisecond)
+	}
+	p.t.Fatal("the worker never stopped")
+}
+
+// saysAny waits for a line, whatever it is.
+func (p *process) saysAny() {
+	p.t.Helper()
+	if !p.lines.Scan() {
+		p.t.Fatal("the worker said nothing")
+	}
 }
 
 func (p *process) signal(s syscall.Signal) { _ = p.cmd.Process.Signal(s) } // it may have ended

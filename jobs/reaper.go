@@ -54,13 +54,15 @@ func (q *Queue) hasten(ctx context.Context) error {
 	return err
 }
 
-// bury removes the leases that have not changed for too long. After a time in
-// which this process could not look (it was stopped, or the database was away)
-// every worker gets the full time anew.
+// bury removes the leases that have not changed for too long. A time in which
+// this process could not look (it was stopped, or the database was away) counts
+// as one pass.
 func (r *reaper) bury(ctx context.Context) error {
 	now := time.Now()
-	if now.Sub(r.last) > 3*r.q.time.reap+r.q.time.beat {
-		clear(r.seen)
+	if blind := now.Sub(r.last) - r.q.time.reap; blind > 2*r.q.time.reap+r.q.time.beat {
+		for id, s := range r.seen {
+			r.seen[id] = sighting{s.beat, s.at.Add(blind)}
+		}
 	}
 	var silent []string
 	alive := map[string]sighting{}
@@ -85,6 +87,7 @@ func (r *reaper) bury(ctx context.Context) error {
 	r.seen, r.last = alive, now
 	for _, id := range silent {
 		if _, err := r.q.e.read().exec(ctx, `DELETE FROM leadline_worker WHERE id = ? AND beat = ?`, id, alive[id].beat); err != nil {
+			clear(r.seen) // nobody could write a beat either, it may be
 			return err
 		}
 		r.q.log.Warn("a worker fell silent", "worker", id)

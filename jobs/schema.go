@@ -2,6 +2,7 @@ package jobs
 
 import (
 	"context"
+	"crypto/rand"
 	"embed"
 	"errors"
 	"fmt"
@@ -96,5 +97,7 @@ func migrateOwn(ctx context.Context, t conn, engine string) error {
 			return err
 		}
 	}
-	return nil
+	// The queue's name, which its spool folder bears.
+	_, err = t.exec(ctx, `INSERT INTO leadline_name (id) SELECT ? WHERE NOT EXISTS (SELECT 1 FROM leadline_name)`, rand.Text())
+	return err
 }

@@ -10,6 +10,7 @@ import (
 	"github.com/riverqueue/river/rivertype"
 
 	"leadline/render/frame"
+	"leadline/render/printfile"
 )
 
 // Why a task stops before its end.
@@ -42,7 +43,11 @@ func (w *worker) do(ctx context.Context, job *rivertype.JobRow, k ticket) error 
 		return nil
 	}
 	defer w.drop(k)
-	o, err := w.take(ctx, k)
+	var o *order
+	err := persist(ctx, func() (err error) { // River would give a job up whose taking fails
+		o, err = w.take(ctx, k)
+		return err
+	})
 	if err != nil || o == nil {
 		return err
 	}
@@ -69,6 +74,9 @@ func (w *worker) run(ctx context.Context, job *rivertype.JobRow, k ticket, o *or
 	if err := ctx.Err(); err != nil {
 		return err
 	}
+	if err := w.allowed(o); err != nil {
+		return err
+	}
 	switch k.Index {
 	case planIndex:
 		return w.doPlan(ctx, job, k, o)
@@ -76,6 +84,19 @@ func (w *worker) run(ctx context.Context, job *rivertype.JobRow, k ticket, o *or
 		return w.doAssembly(ctx, job, k, o)
 	}
 	return w.doTile(ctx, job, k, o)
+}
+
+// allowed holds a print to this worker's limits: another with higher ones may
+// have planned it.
+func (w *worker) allowed(o *order) error {
+	if w.o.Limits == (Limits{}) {
+		return nil
+	}
+	f, err := o.parse()
+	if err != nil {
+		return err
+	}
+	return w.o.Limits.check(f, o, w.o.Slots)
 }
 
 // account writes down how a task failed.
@@ -94,6 +115,7 @@ func (w *worker) account(ctx context.Context, stopped bool, k ticket, err error)
 	case errors.As(err, &panicked):
 		return q.putBack(ctx, k, held{by: w.id, fault: err.Error()})
 	}
+	w.say("print %d failed: %v", k.Print, err)
 	return q.e.do(ctx, func(t tx) error {
 		if _, err := load(ctx, t, k.Print, "{lock}"); err != nil {
 			return err
@@ -108,7 +130,10 @@ func (w *worker) account(ctx context.Context, stopped bool, k ticket, err error)
 
 // cure is the hint of a failed print.
 func cure(err error) string {
-	if h := hintOf(err); h != "" {
+	var file *printfile.WriteError
+	if h := hintOf(err); errors.As(err, &file) {
+		return h + "; then queue again goes on from the tiles that are kept"
+	} else if h != "" {
 		return h
 	}
 	var faults frame.Faults

@@ -188,7 +188,7 @@ func TestQueuedRun(t *testing.T) {
 				<-ctx.Done()
 			}
 		}})
-		until(t, q, id, "half done", func(p *Print) bool { return p.Done == 3 })
+		until(t, q, id, "half done", func(p *Print) bool { return p.Done == 3 && p.Attempts == 5 }) // tile 3 is in hand
 		all, err := q.Workers(t.Context())
 		if err != nil || len(all) != 1 || all[0].Tiles != 3 || all[0].Rate <= 0 || len(all[0].Holding) != 1 ||
 			!strings.HasPrefix(all[0].Holding[0], "tile 3 of") {

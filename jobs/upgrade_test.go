@@ -2,6 +2,8 @@ package jobs
 
 import (
 	"errors"
+	"os"
+	"path/filepath"
 	"strings"
 	"testing"
 )
@@ -13,9 +15,14 @@ func TestUpgrade(t *testing.T) {
 	engines(t, func(t *testing.T, d database) {
 		old := d.open(t)
 		id := add(t, old, AddOptions{})
-		for _, step := range []string{`DROP TABLE leadline_loss`, `DROP INDEX leadline_tile_recent`,
+		for _, step := range []string{`DROP TABLE leadline_loss`, `DROP TABLE leadline_name`, `DROP INDEX leadline_tile_recent`,
 			`ALTER TABLE leadline_tile DROP COLUMN look`, `DELETE FROM leadline_schema WHERE version = 2`} {
 			if _, err := old.e.read().exec(t.Context(), step); err != nil {
+				t.Fatal(err)
+			}
+		}
+		if old.spool != nil {
+			if err := os.Remove(filepath.Join(old.spool.dir, nameFile)); err != nil {
 				t.Fatal(err)
 			}
 		}

@@ -10,6 +10,8 @@ import (
 	"time"
 
 	"github.com/riverqueue/river"
+
+	"leadline/render/words"
 )
 
 // WorkOptions are the choices of a worker. The zero value works.
@@ -18,6 +20,8 @@ type WorkOptions struct {
 	Drain  bool   // return when no print is left that could be worked on
 	Name   string // shown to people; "": host and process
 	Limits Limits // what a print may claim here
+	// Say is told, in words, what becomes of prints here; nil: nothing is said.
+	Say func(string)
 
 	before func(context.Context, ticket) // tests: called as a task begins
 }
@@ -46,18 +50,11 @@ type task struct {
 // of this release is done, failed, cancelled or paused.
 func (q *Queue) Work(ctx context.Context, o WorkOptions) error {
 	w := q.newWorker(o)
-	if err := w.beat(ctx); err != nil {
-		return err
-	}
-	q.tidy(ctx)
-	k, err := q.e.worker(w.config())
+	k, err := w.enter(ctx)
 	if err != nil {
 		return err
 	}
-	// River gets a context of its own: it stops after the lease's keeping has.
-	if err := k.Start(context.WithoutCancel(ctx)); err != nil {
-		return fmt.Errorf("starting a worker: %w", err)
-	}
+	w.say("%s works on %s at a time", w.o.Name, words.Plural(w.o.Slots, "task", "tasks"))
 	err = w.keep(ctx)
 	stop, cancel := context.WithTimeout(context.WithoutCancel(ctx), stopTime)
 	defer cancel()
@@ -67,6 +64,43 @@ func (q *Queue) Work(ctx context.Context, o WorkOptions) error {
 	}
 	w.leave(stop)
 	return err
+}
+
+// startTime bounds how long a worker tries to start while the database is away.
+const startTime = time.Minute
+
+// enter takes the lease and starts River.
+func (w *worker) enter(ctx context.Context) (k client, err error) {
+	patient, cancel := context.WithTimeout(ctx, startTime)
+	defer cancel()
+	err = persist(patient, func() error {
+		err := w.beat(ctx)
+		if refuses(err) {
+			cancel()
+		}
+		return err
+	})
+	if err != nil {
+		return nil, err
+	}
+	w.q.tidy(ctx)
+	err = persist(patient, func() error {
+		if k, err = w.q.e.worker(w.config()); err != nil {
+			return err
+		}
+		// River gets a context of its own: it stops after the lease's keeping has.
+		if err := k.Start(context.WithoutCancel(ctx)); err != nil {
+			return &storeError{"starting a worker", err}
+		}
+		return nil
+	})
+	return k, err
+}
+
+func (w *worker) say(format string, a ...any) {
+	if w.o.Say != nil {
+		w.o.Say(fmt.Sprintf(format, a...))
+	}
 }
 
 func (q *Queue) newWorker(o WorkOptions) *worker {

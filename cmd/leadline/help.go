@@ -29,7 +29,7 @@ func showHelp(cmd *cobra.Command, _ []string) {
 	switch {
 	case topic:
 	case cmd.HasParent():
-		text += "\nFlags\n" + cmd.LocalFlags().FlagUsagesWrapped(helpWidth)
+		text += "\nFlags\n" + cmd.LocalFlags().FlagUsagesWrapped(helpWidth) + cmd.InheritedFlags().FlagUsagesWrapped(helpWidth)
 	default:
 		text += commandList(cmd) + exitHelp
 	}

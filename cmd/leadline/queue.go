@@ -95,7 +95,7 @@ release. It may be run twice at once. The desk's own queue does this by itself.`
 			if err := jobs.Migrate(cmd.Context(), address(cmd)); err != nil {
 				return err
 			}
-			_, err := fmt.Fprintln(cmd.OutOrStdout(), "the queue's tables are up to date")
+			_, err := fmt.Fprintln(cmd.OutOrStdout(), "the queue's tables are there and up to date")
 			return err
 		},
 	}

@@ -16,6 +16,7 @@ import (
 type addFlags struct {
 	renderFlags
 	priority int
+	replace  bool
 }
 
 func queueAddCommand() *cobra.Command {
@@ -41,6 +42,7 @@ printed for each is what the other actions take.`,
 	f.SortFlags = false
 	f.StringVarP(&g.out, "out", "o", "", "write this `PNG`; of several frames the folder (by default named after the frame, here)")
 	f.IntVar(&g.priority, "priority", jobs.DefaultPriority, "`1` first … 4 last")
+	f.BoolVar(&g.replace, "replace", false, "write over what is there")
 	f.StringVar(&g.crop, "crop", "", "only the part `X,Y,W,H`, in pixels from the trim's top left")
 	f.StringVar(&g.scale, "scale", "1", "at `1/k` of the size, k a whole number")
 	f.IntVar(&g.audit, "audit", 32, "audit `N` random pixels")
@@ -97,7 +99,7 @@ func (g addFlags) order(cmd *cobra.Command, path string, f loaded, k int, severa
 		return jobs.AddOptions{}, err
 	}
 	out, err := filepath.Abs(o.Out)
-	return jobs.AddOptions{Out: out, Priority: g.priority, Scale: o.Scale, Crop: o.Crop, Audit: o.Audit}, err
+	return jobs.AddOptions{Out: out, Priority: g.priority, Scale: o.Scale, Crop: o.Crop, Audit: o.Audit, Replace: g.replace}, err
 }
 
 func sayAdded(cmd *cobra.Command, id int64, out string, asJSON bool) error {

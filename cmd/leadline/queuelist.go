@@ -74,10 +74,10 @@ func leftWords(p *jobs.Print) string {
 	switch {
 	case p.Left <= 0 || p.Paused || p.State != jobs.Rendering:
 		return "-"
-	case p.LeftHigh <= 0:
-		return words.Clock(p.Left)
+	case p.LeftHigh <= 0 || words.Span(p.LeftLow) == words.Span(p.LeftHigh):
+		return words.Span(p.Left)
 	}
-	return fmt.Sprintf("%s (%s to %s)", words.Clock(p.Left), words.Clock(p.LeftLow), words.Clock(p.LeftHigh))
+	return words.Span(p.Left) + ", " + words.Between(p.LeftLow, p.LeftHigh)
 }
 
 func queueShowCommand() *cobra.Command {
@@ -129,11 +129,13 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 	}
 	row("out", "%s", p.Out)
 	row("size", "%d x %d px at 1/%d, priority %d", p.Width, p.Height, p.Scale, p.Priority)
-	row("tiles", "%d of %d, %d tasks begun, %d taken over from silent workers", p.Done, p.Tiles, p.Attempts, p.Rescued)
+	row("tiles", "%d of %d; %d tasks begun, with plan and assembly, %d taken over from silent workers", p.Done, p.Tiles, p.Attempts, p.Rescued)
 	if p.Rate > 0 {
 		row("rate", "%s/s, %s left", words.Amount(p.Rate, "px"), leftWords(p))
 	}
-	row("workers", "%d that could work on it (release %s, numerics %d)", p.Progress.Workers, p.Release, p.Numerics)
+	if p.Ended.IsZero() {
+		row("workers", "%d that could work on it (release %s, numerics %d)", p.Progress.Workers, p.Release, p.Numerics)
+	}
 	row("added", "%s", p.Added.Local().Format(time.DateTime))
 	if !p.Ended.IsZero() {
 		row("ended", "%s", p.Ended.Local().Format(time.DateTime))
@@ -141,7 +143,7 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 	if p.File != "" {
 		row("file", "%s, %s", p.File, words.Size(p.Bytes))
 		row("sidecar", "%s", p.Sidecar)
-		row("sha256", "%s", p.SHA256)
+		row("pixels", "sha256 %s", p.SHA256)
 	}
 	return nil
 }

@@ -67,6 +67,14 @@ func (e *printError) Hint() string {
 	return fmt.Sprintf("leadline queue again %d goes on from what is kept", e.p.ID)
 }
 
+// phase is where a print is, for the meter.
+func phase(p *jobs.Print) render.Progress {
+	if p.State == jobs.Planning || p.State == jobs.Assembling {
+		return render.Progress{Phase: string(p.State), Total: 1} // no figures come of these two
+	}
+	return render.Progress{Phase: render.PhasePixels, Done: p.Pixel, Total: p.Pixels}
+}
+
 // watch looks at a print until it is done, which it returns then.
 func watch(cmd *cobra.Command, q *jobs.Queue, id int64, m *meter, asJSON bool) (*jobs.Print, error) {
 	ctx := cmd.Context()
@@ -82,7 +90,7 @@ func watch(cmd *cobra.Command, q *jobs.Queue, id int64, m *meter, asJSON bool) (
 				return nil, err
 			}
 		}
-		m.tell(render.Progress{Phase: render.PhasePixels, Done: p.Pixel, Total: p.Pixels})
+		m.tell(phase(p))
 		switch p.State {
 		case jobs.Done:
 			return p, nil

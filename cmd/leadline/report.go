@@ -20,7 +20,7 @@ func report(w io.Writer, r *render.Result, asJSON bool) error {
   %d x %d px, %s, %.1f samples a pixel, %s
   inside %.2f %%, undecided %.2f %% of samples
   %s
-  sha256 %s
+  pixels sha256 %s
   sidecar %s
 `, r.File, r.Width, r.Height, words.Size(r.Bytes), float64(c.Samples)/float64(c.Pixels), words.Clock(r.Seconds.Total),
 		percent(c.Inside, c.Samples), percent(c.Undecided, c.Samples), auditWords(a), r.SHA256, r.Sidecar)

@@ -70,9 +70,13 @@ func runWork(cmd *cobra.Command, g workFlags) error {
 	}
 	return withQueue(cmd, jobs.Options{Spool: g.spool}, func(q *jobs.Queue) error {
 		err := q.Work(cmd.Context(), jobs.WorkOptions{Slots: g.slots, Drain: g.drain, Name: g.name,
+			Say:    func(s string) { fmt.Fprintln(cmd.ErrOrStderr(), "leadline:", s) },
 			Limits: jobs.Limits{Pixels: g.pixels, Iterations: g.iterations, Memory: g.memory}})
 		if interrupted(cmd.Context(), err) {
 			return fmt.Errorf("%w; what was in hand is back in the queue", errInterrupted)
+		}
+		if err == nil && g.drain {
+			fmt.Fprintln(cmd.ErrOrStderr(), "leadline: nothing is left to do")
 		}
 		return err
 	})

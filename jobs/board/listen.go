@@ -85,7 +85,7 @@ func Listen(ctx context.Context, q Queue, o Options) (*Server, error) {
 		Handler:           g.around(newPages(q, o.River, o.Log)),
 		ReadHeaderTimeout: 10 * time.Second, ReadTimeout: time.Minute, WriteTimeout: time.Minute, IdleTimeout: 2 * time.Minute,
 		MaxHeaderBytes: 32 << 10,
-		ErrorLog:       slog.NewLogLogger(o.Log.Handler(), slog.LevelError),
+		ErrorLog:       slog.NewLogLogger(o.Log.Handler(), slog.LevelDebug), // strangers' broken handshakes,
 	}
 	return s, nil
 }
@@ -165,6 +165,13 @@ func isLoopback(ctx context.Context, host string) (bool, error) {
 func (o *Options) certificate() (*tls.Config, error) {
 	if o.Certificate == "" {
 		return nil, nil
+	}
+	if f, err := os.Open(o.Key); err == nil { // LoadX509KeyPair says it where there is none
+		err = private(f, "key")
+		f.Close()
+		if err != nil {
+			return nil, err
+		}
 	}
 	c, err := tls.LoadX509KeyPair(o.Certificate, o.Key)
 	if err != nil {

@@ -60,7 +60,12 @@ func selfMade(t *testing.T) (certificate, key string, roots *x509.CertPool) {
 func TestUnsafe(t *testing.T) {
 	t.Parallel()
 	certificate, key, _ := selfMade(t)
+	bare := filepath.Join(t.TempDir(), "bare.key")
+	if b, err := os.ReadFile(key); err != nil || os.WriteFile(bare, b, 0o644) != nil || os.Chmod(bare, 0o644) != nil {
+		t.Fatal(err)
+	}
 	for name, o := range map[string]Options{
+		"a key for all": {Listen: "0.0.0.0:0", Token: testToken, Certificate: certificate, Key: bare},
 		"nothing":       {Listen: "0.0.0.0:0"},
 		"empty host":    {Listen: ":0"},
 		"IPv6":          {Listen: "[::]:0"},

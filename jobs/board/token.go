@@ -27,7 +27,7 @@ func ReadToken(path string) (string, error) {
 		return "", fmt.Errorf("reading the token: %w", err)
 	}
 	defer f.Close()
-	if err := private(f); err != nil {
+	if err := private(f, "token"); err != nil {
 		return "", err
 	}
 	b, err := io.ReadAll(io.LimitReader(f, 4096))

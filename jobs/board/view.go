@@ -108,19 +108,27 @@ func facts(p *jobs.Print) []fact {
 		{"Priority", fmt.Sprintf("%d (1 is first, 4 last)", p.Priority), false},
 		{"Pixels done", fmt.Sprintf("%s of %s", words.Count(p.Pixel), words.Count(p.Pixels)), false},
 		{"Tasks", fmt.Sprintf("%s begun, %s taken over from silent workers", words.Count(p.Attempts), words.Count(p.Rescued)), false},
-		{"Workers", fmt.Sprintf("%d that could work on it", p.Progress.Workers), false},
+		{"Workers", able(p), false},
 		{"Release", fmt.Sprintf("%s, numerics %d", p.Release, p.Numerics), false},
 		{"Added", when(p.Added), false},
 		{"Begun", when(p.Began), false},
 		{"Ended", when(p.Ended), false},
 		{"File", p.File, true},
 		{"Sidecar", p.Sidecar, true},
-		{"SHA-256", p.SHA256, true},
+		{"Pixels' SHA-256", p.SHA256, true},
 	}
 	if p.Bytes > 0 {
 		all = append(all, fact{"File size", words.Amount(float64(p.Bytes), "B"), false})
 	}
 	return slices.DeleteFunc(all, func(f fact) bool { return f.Value == "" })
+}
+
+// able says who could work on a print that is not over.
+func able(p *jobs.Print) string {
+	if over(p) {
+		return ""
+	}
+	return fmt.Sprintf("%d that could work on it", p.Progress.Workers)
 }
 
 // size is what is printed, and at which scale.

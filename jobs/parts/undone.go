@@ -41,7 +41,7 @@ func (e *UndoneError) Hint() string {
 	case len(todo) == 0:
 		return fmt.Sprintf("render any part again: leadline render FRAME --part 1/%d --parts %s", e.Parts, e.Dir)
 	}
-	return fmt.Sprintf("render them with the same frame and options: leadline render FRAME --part %d/%d --parts %s\n"+
+	return fmt.Sprintf("those still being rendered count as missing; render the others with the same frame and options: leadline render FRAME --part %d/%d --parts %s\n"+
 		"in a Slurm array: sbatch --array=%s; then join again", todo[0], e.Parts, e.Dir, Ranges(todo))
 }
 

@@ -10,3 +10,7 @@ CREATE TABLE leadline_loss (
 );
 
 CREATE INDEX leadline_loss_print ON leadline_loss (print, idx);
+
+CREATE TABLE leadline_name (
+    id        text    PRIMARY KEY
+);
