@@ -54,6 +54,13 @@ func (l Limits) check(f *frame.Frame, o *order, slots int) error {
 // for all longer leaps together.
 const iterationBytes = 16 + 2*(48+8)/4
 
+// Memory estimates what a print of the whole sheet takes in a worker of so many
+// slots, in bytes.
+func Memory(r *frame.Resolved, slots int) int64 {
+	full := r.Sheet.Full()
+	return memory(r, &order{rect: full, side: usualSide(full)}, slots)
+}
+
 // memory estimates what a print takes in a worker: the reference and its
 // tables if it runs to the limit (a Julia set has two), the tiles in hand with
 // their compressed copies, and one row of tiles.

@@ -12,7 +12,7 @@ import (
 
 // BenchmarkTwoSecondTiles makes one print of some 120 tiles of about two
 // seconds, by render.Print and by the desk's queue with one worker, both on all
-// cores. Run it with -benchtime 1x -count N: the runs alternate.
+// cores, one after the other; -benchtime 1x does each once.
 func BenchmarkTwoSecondTiles(b *testing.B) {
 	doc, err := frame.Load("../testdata/frames/undertow.frame.json")
 	if err != nil {

@@ -131,7 +131,7 @@ func (w *worker) config() *river.Config {
 		ID: w.id, Logger: w.q.log, Workers: workers,
 		Queues:                      map[string]river.QueueConfig{queueName(w.q.release, w.q.numbers): {MaxWorkers: w.o.Slots}},
 		JobTimeout:                  -1,
-		FetchCooldown:               10 * time.Millisecond,
+		FetchCooldown:               2 * time.Millisecond,
 		FetchPollInterval:           500 * time.Millisecond,
 		CompletedJobRetentionPeriod: time.Hour,
 		DiscardedJobRetentionPeriod: time.Hour,
