@@ -73,6 +73,16 @@ type Plan struct {
 	sampler sampler
 	ref     *orbit.Reference
 	pixel   precision.Ext
+	config  kernel.Config
+	leaps   leaps
+}
+
+// leaps are a reference's tables and what they were built for: the largest
+// |δc| and the exponent that δc is given in.
+type leaps struct {
+	tables []*orbit.Table
+	far    precision.Ext
+	scale  int64
 }
 
 // NewPlan computes what a frame's pixels share. The frame may be as written by
@@ -91,11 +101,16 @@ func finishPlan(ctx context.Context, f *frame.Frame, r *frame.Resolved, ref *orb
 	if err != nil {
 		return nil, err
 	}
+	return p, p.finish(ctx, o)
+}
+
+// finish makes the part of a plan that colours.
+func (p *Plan) finish(ctx context.Context, o Options) error {
 	if err := p.freezeInk(ctx, o); err != nil {
-		return nil, err
+		return err
 	}
 	p.shader = ink.New(p.frame.Ink.Baked, p.r.Drive, p.r.Edge, p.Space)
-	return p, nil
+	return nil
 }
 
 // NewProbe is NewPlan without the ink: enough for Field, Exact and Compare.
@@ -109,10 +124,17 @@ func NewProbe(ctx context.Context, f *frame.Frame, o Options) (*Plan, error) {
 
 // newPlan makes the part of a plan that iterates.
 func newPlan(ctx context.Context, f *frame.Frame, r *frame.Resolved, ref *orbit.Reference, o Options) (*Plan, error) {
-	p := &Plan{frame: frozen(f, r), r: r, ref: ref, Geometry: r.Sheet, Space: r.Space,
+	p := unmade(f, r)
+	p.ref = ref
+	return p, p.iterate(ctx, o)
+}
+
+// unmade is a plan in which nothing is computed yet.
+func unmade(f *frame.Frame, r *frame.Resolved) *Plan {
+	p := &Plan{frame: frozen(f, r), r: r, Geometry: r.Sheet, Space: r.Space,
 		Seconds: map[string]float64{}, sampler: newSampler(r)}
 	p.pixel = r.Height.Ext().Quo(precision.ExtOf(float64(p.Geometry.TrimH)))
-	return p, p.iterate(ctx, o)
+	return p
 }
 
 // Frame is the frozen frame: every default written out, the fit and the baked
@@ -141,7 +163,7 @@ func (p *Plan) iterate(ctx context.Context, o Options) error {
 			return err
 		}
 	}
-	p.kernel = kernel.New(c)
+	p.config, p.kernel = c, kernel.New(c)
 	return nil
 }
 
@@ -168,8 +190,10 @@ func (p *Plan) refer(ctx context.Context, c *kernel.Config, o Options) error {
 	if !c.Julia {
 		far = p.far()
 	}
-	c.Reference = p.ref
-	c.Tables = p.ref.Tables(far, p.pixel.E, c.Bailout)
+	if p.leaps.tables == nil {
+		p.leaps = leaps{p.ref.Tables(far, p.pixel.E, c.Bailout), far, p.pixel.E}
+	}
+	c.Reference, c.Tables = p.ref, p.leaps.tables
 	o.tell(PhaseTables, 1, 1)
 	p.clock(PhaseTables, start)
 	return nil

@@ -24,13 +24,8 @@ func newRoot(stdout, stderr io.Writer) *cobra.Command {
 	root := &cobra.Command{
 		Use: "leadline", Short: "large prints of deep escape-time sets", Long: rootHelp, Example: rootExample,
 		Version: render.Release, SuggestionsMinimumDistance: 2, SilenceErrors: true, SilenceUsage: true,
-		Args: func(cmd *cobra.Command, args []string) error {
-			if len(args) > 0 {
-				return unknownCommand(cmd, args[0])
-			}
-			return nil
-		},
-		RunE: func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
+		Args: screenArgs,
+		RunE: screensOf,
 	}
 	root.SetOut(stdout)
 	root.SetErr(stderr)

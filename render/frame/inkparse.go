@@ -112,7 +112,7 @@ func (o *object) codes(key string, must need, to *[3]uint16) bool {
 // check holds the ink against its rules.
 func (k Ink) check(c *collector) {
 	if k.Ramp != nil {
-		k.Ramp.check(c)
+		k.Ramp.check(c, "ink.ramp")
 	}
 	k.Drive.check(c)
 	if k.Inside != nil {
@@ -133,19 +133,21 @@ func (k Ink) check(c *collector) {
 	}
 }
 
-func (r Ramp) check(c *collector) {
+// check holds a ramp at a path against its rules.
+func (r Ramp) check(c *collector, path string) {
+	path = join(path, "stops")
 	if len(r.Stops) < MinStops || len(r.Stops) > MaxStops {
-		c.addf("ink.ramp.stops", "", "has %d entries, not from %d to %d", len(r.Stops), MinStops, MaxStops)
+		c.addf(path, "", "has %d entries, not from %d to %d", len(r.Stops), MinStops, MaxStops)
 		return
 	}
 	for i, s := range r.Stops {
-		path := fmt.Sprintf("ink.ramp.stops[%d]", i)
-		c.within(path+".at", s.At, 0, 1)
+		at := fmt.Sprintf("%s[%d]", path, i)
+		c.within(at+".at", s.At, 0, 1)
 		if i > 0 && s.At <= r.Stops[i-1].At {
-			c.addf(path+".at", "stops ascend; give each its own place", "%s does not come after %s",
+			c.addf(at+".at", "stops ascend; give each its own place", "%s does not come after %s",
 				short(s.At), short(r.Stops[i-1].At))
 		}
-		c.colour(path+".colour", s.Colour)
+		c.colour(at+".colour", s.Colour)
 	}
 }
 

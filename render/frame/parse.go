@@ -46,7 +46,7 @@ func (f *Frame) UnmarshalJSON(data []byte) error {
 }
 
 // formatPattern takes a format apart: family and version.
-var formatPattern = regexp.MustCompile(`^leadline\.(frame|sidecar)/([1-9][0-9]{0,8})\z`)
+var formatPattern = regexp.MustCompile(`^leadline\.(frame|sidecar|ramp)/([1-9][0-9]{0,8})\z`)
 
 // checkFormat holds the document's format against the one wanted. Documents of
 // another format are not read further: their other faults would mislead. A

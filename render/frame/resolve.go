@@ -99,10 +99,7 @@ func (s Sampling) bounds() (least, most int) {
 func (k Ink) resolve(r *Resolved) {
 	r.Ramp = palette.DefaultRamp()
 	if k.Ramp != nil {
-		r.Ramp = palette.Ramp{Smooth: deref(k.Ramp.Smooth, true)}
-		for _, s := range k.Ramp.Stops {
-			r.Ramp.Stops = append(r.Ramp.Stops, palette.Stop(s))
-		}
+		r.Ramp = k.Ramp.palette()
 	}
 	d := k.Drive
 	r.Drive = ResolvedDrive{

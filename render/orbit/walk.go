@@ -26,12 +26,16 @@ type walker struct {
 }
 
 // checkEvery is how many iterations pass between looks at the context: at
-// 33,000 bits about a tenth of a second.
-const checkEvery = 512
+// 33,000 bits about a tenth of a second. Wider orbits look more often.
+const (
+	checkEvery     = 512
+	checkEveryWide = 64
+	wide           = 16000
+)
 
 // pause reports progress and returns the context's error once it is done.
 func (w *walker) pause(stage string, n, of int) error {
-	if n%checkEvery != 0 {
+	if n%checkEveryWide != 0 || n%checkEvery != 0 && w.frac < wide {
 		return nil
 	}
 	if w.q.Progress != nil {
