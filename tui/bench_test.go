@@ -2,13 +2,16 @@ package tui
 
 import (
 	"bytes"
+	"context"
 	"path/filepath"
 	"slices"
+	"sync"
 	"testing"
 	"time"
 
 	tea "github.com/charmbracelet/bubbletea"
 
+	"leadline/render"
 	"leadline/render/frame"
 	"leadline/tui/engine"
 	"leadline/tui/kit"
@@ -86,6 +89,36 @@ func BenchmarkKeys(b *testing.B) {
 			b.ReportMetric(float64(size/len(first)), "B/frame")
 		})
 	}
+}
+
+// BenchmarkKeysBesideWork is BenchmarkKeys at one depth while a print takes all
+// cores.
+func BenchmarkKeysBesideWork(b *testing.B) {
+	m, pictures := deskAt(b, "undertow")
+	settle(b, m, pictures)
+	ctx, cancel := context.WithCancel(b.Context())
+	var wg sync.WaitGroup
+	wg.Go(func() {
+		for ctx.Err() == nil {
+			_, _ = render.Print(ctx, m.desk.Frame, render.PrintOptions{Out: filepath.Join(b.TempDir(), "a.png")}) // until it is stopped
+		}
+	})
+	var first, whole []float64
+	for b.Loop() {
+		start := time.Now()
+		m.Update(keyOf([]string{"+", "right", "-", "left"}[len(first)%4]))
+		_ = m.View()
+		first = append(first, float64(time.Since(start).Microseconds())/1000)
+		settle(b, m, pictures)
+		whole = append(whole, float64(time.Since(start).Microseconds())/1000)
+	}
+	cancel()
+	wg.Wait()
+	slices.Sort(first)
+	slices.Sort(whole)
+	b.ReportMetric(first[len(first)/2], "ms-first")
+	b.ReportMetric(first[len(first)*9/10], "ms-first90")
+	b.ReportMetric(whole[len(whole)/2], "ms-whole")
 }
 
 // BenchmarkKeysUnderWay presses a key every 30 ms while pictures are under way,

@@ -3,6 +3,7 @@ package tui
 import (
 	"bytes"
 	"fmt"
+	"math"
 	"os"
 	"path/filepath"
 	"strings"
@@ -13,6 +14,9 @@ import (
 	"github.com/charmbracelet/x/ansi"
 
 	"leadline/jobs"
+	"leadline/precision"
+	"leadline/render/frame"
+	"leadline/tui/engine"
 	"leadline/tui/kit"
 )
 
@@ -241,5 +245,37 @@ func TestFiles(t *testing.T) {
 	b.keys("enter")
 	if !b.said.Bad || !strings.Contains(b.said.Text, "gone.frame.json") {
 		t.Errorf("said %q", b.said.Text)
+	}
+}
+
+// TestNoKeyIsLost presses keys while an orbit at 1e-1195 is in the making: each
+// has its step, in order.
+func TestNoKeyIsLost(t *testing.T) {
+	doc, err := frame.Load("../testdata/frames/samphire-star.frame.json")
+	if err != nil {
+		t.Fatal(err)
+	}
+	b := newBench(t, Options{Frame: doc.Frame})
+	pictures := make(chan *engine.Picture, 10_000)
+	b.desk.Engine = engine.New(func(p *engine.Picture) { pictures <- p })
+	t.Cleanup(b.desk.Engine.Close)
+	b.desk.Pinned = false
+	before, _ := b.desk.Steps()
+	b.Update(tea.WindowSizeMsg{Width: 120, Height: 40}) // the engine begins
+	keys := []string{"+", "right", "+", "t", "-", "up", "+"}
+	const presses = 70
+	for i := range presses {
+		b.Update(keyOf(keys[i%len(keys)]))
+		if len(pictures) > 0 {
+			b.Update(kit.Drawn{Picture: <-pictures})
+		}
+	}
+	if after, _ := b.desk.Steps(); after-before != presses {
+		t.Errorf("%d keys made %d steps", presses, after-before)
+	}
+	// 1.5 to the power of (3 - 1) x 10
+	want := precision.Depth(doc.Frame.View.Height) + 20*math.Log10(1.5)
+	if got := precision.Depth(b.desk.Frame.View.Height); math.Abs(got-want) > 1e-3 {
+		t.Errorf("depth %v, not %v", got, want)
 	}
 }

@@ -140,14 +140,23 @@ func (r Ramp) check(c *collector, path string) {
 		c.addf(path, "", "has %d entries, not from %d to %d", len(r.Stops), MinStops, MaxStops)
 		return
 	}
+	ascend := true
 	for i, s := range r.Stops {
 		at := fmt.Sprintf("%s[%d]", path, i)
 		c.within(at+".at", s.At, 0, 1)
 		if i > 0 && s.At <= r.Stops[i-1].At {
 			c.addf(at+".at", "stops ascend; give each its own place", "%s does not come after %s",
 				short(s.At), short(r.Stops[i-1].At))
+			ascend = false
 		}
 		c.colour(at+".colour", s.Colour)
+	}
+	n := len(r.Stops) - 1
+	if first := r.Stops[0].At; ascend && first > 0 && first < 1 {
+		c.addf(path+"[0].at", "repeat its colour at 0", "%s: the first must be at 0", short(first))
+	}
+	if last := r.Stops[n].At; ascend && last > 0 && last < 1 {
+		c.addf(fmt.Sprintf("%s[%d].at", path, n), "repeat its colour at 1", "%s: the last must be at 1", short(last))
 	}
 }
 

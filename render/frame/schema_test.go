@@ -57,7 +57,7 @@ func verdicts() []verdict {
 	many := func(n int) string {
 		var b []string
 		for i := range n {
-			b = append(b, `{"at": `+short(float64(i)/300)+`, "colour": "red"}`)
+			b = append(b, `{"at": `+short(float64(i)/float64(n-1))+`, "colour": "red"}`)
 		}
 		return stops(strings.Join(b, ","))
 	}

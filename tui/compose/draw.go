@@ -30,7 +30,8 @@ func (s *Screen) picture() []string {
 		return s.shown.lines
 	}
 	g := cells.Draw(s.samples(), s.lay.mesh, d.Depth, cells.Options{Light: !d.Style.Dark, ASCII: d.ASCII,
-		Mat: &cells.Mat{Sheet: image.Rectangle{Min: s.lay.at, Max: s.lay.at.Add(s.lay.size)}, Tone: d.Style.MatTone}})
+		Dither: d.Depth == cells.C16, // where most of a picture would else be grey
+		Mat:    &cells.Mat{Sheet: image.Rectangle{Min: s.lay.at, Max: s.lay.at.Add(s.lay.size)}, Tone: d.Style.MatTone}})
 	if s.guides {
 		s.drawGuides(g)
 	}

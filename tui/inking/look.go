@@ -66,7 +66,7 @@ func (s *Screen) lookAt(slot int, f *frame.Frame) *look {
 	if err != nil {
 		panic("inking: a frame on the desk breaks its rules: " + err.Error()) // Desk.Put holds them
 	}
-	l := &look{frame: f, resolved: r, ramp: mended(r.Ramp), outside: make([]bool, frame.RampSize)}
+	l := &look{frame: f, resolved: r, ramp: r.Ramp, outside: make([]bool, frame.RampSize)}
 	l.curve = l.ramp.Curve()
 	for i := range l.outside {
 		c := l.curve.At(float64(i) / (frame.RampSize - 1))

@@ -17,22 +17,6 @@ const nearest = 0.001
 // rounded is a place with no more decimals than are of use.
 func rounded(at float64) float64 { return math.Round(at*1e6) / 1e6 }
 
-// mended is a ramp that can be drawn: a frame's may begin after 0 or end before
-// 1, which its print would be refused for; the end colours then go on to the
-// ends.
-func mended(r palette.Ramp) palette.Ramp {
-	r.Stops = slices.Clone(r.Stops)
-	if n := len(r.Stops); n > 0 && r.Validate() != nil {
-		if first := r.Stops[0]; first.At > 0 {
-			r.Stops = slices.Insert(r.Stops, 0, palette.Stop{At: 0, Colour: first.Colour})
-		}
-		if last := r.Stops[len(r.Stops)-1]; last.At < 1 {
-			r.Stops = append(r.Stops, palette.Stop{At: 1, Colour: last.Colour})
-		}
-	}
-	return r
-}
-
 // split adds a stop half-way between stop i and the next (the last: the one
 // before), in the colour that is there. It gives the new stop's number.
 func split(r palette.Ramp, i int) (palette.Ramp, int, error) {

@@ -72,21 +72,6 @@ func TestRecolouringIteratesNothing(t *testing.T) {
 	}
 }
 
-// A frame's ramp may leave the ends out, for which printing refuses it; the
-// screen shows it drawn on to the ends, and the next change mends it.
-func TestRampWithoutEnds(t *testing.T) {
-	f := testFrame(t, "", "srgb")
-	f.Ink.Ramp.Stops = f.Ink.Ramp.Stops[1:3]
-	s := testScreen(t, f)
-	if text := plain(s.View(80, 24)); !strings.Contains(text, "stop 4") || strings.Contains(text, "no picture") {
-		t.Errorf("drawn as\n%s", text)
-	}
-	press(t, s, "down down right")
-	if got := stops(s.desk.Frame); got != "0 #a0522d | 0.26 #a0522d | 0.5 #f0e6c8 | 1 #f0e6c8" {
-		t.Error(got)
-	}
-}
-
 // states are the screen's faces.
 var states = map[string]string{"list": "", "end": "end", "mixer": "] m down", "locker": "k home down", "question": "] c"}
 
