@@ -259,7 +259,7 @@ func TestNoKeyIsLost(t *testing.T) {
 	pictures := make(chan *engine.Picture, 10_000)
 	b.desk.Engine = engine.New(func(p *engine.Picture) { pictures <- p })
 	t.Cleanup(b.desk.Engine.Close)
-	b.desk.Pinned = false
+	b.desk.Pinned, b.asked = false, engine.Request{}
 	before, _ := b.desk.Steps()
 	b.Update(tea.WindowSizeMsg{Width: 120, Height: 40}) // the engine begins
 	keys := []string{"+", "right", "+", "t", "-", "up", "+"}
