@@ -56,7 +56,7 @@ func About(f *frame.Frame, x, y, zoom, degrees float64) (Move, error) {
 	if err != nil {
 		return Move{}, err
 	}
-	midX, midY := float64(g.TrimW)/2, float64(g.TrimH)/2
+	midX, midY := float64(float64(g.TrimW)/2), float64(float64(g.TrimH)/2)
 	// The old middle is seen from x, y at the distance d, in the new picture at
 	// d·zoom turned; what is as far from the old middle the other way becomes
 	// the new one.
