@@ -58,7 +58,7 @@ func (m *model) status() string {
 	switch {
 	case m.leaving:
 		return s.Warn.Render(kit.Fit(m.leaveWords(), m.width))
-	case m.file.Open():
+	case m.file.Open() && m.said.Text == "":
 		return m.file.View(s, m.width)
 	case m.said.Text != "" && m.said.Bad:
 		return s.Bad.Render(kit.Fit(m.said.Text, m.width))
@@ -72,6 +72,9 @@ func (m *model) status() string {
 func (m *model) foot() string {
 	s := m.desk.Style
 	end := " ? all keys  q quit"
+	if m.leaving {
+		return s.Bar.Render(kit.Fit(" y quit   any other key stay", m.width))
+	}
 	if m.screen().Typing() || m.file.Open() {
 		end = " enter take it  esc leave it"
 	}

@@ -2,7 +2,6 @@ package tui
 
 import (
 	"errors"
-	"fmt"
 	"io/fs"
 	"os"
 	"strings"
@@ -23,6 +22,10 @@ type (
 	opened struct {
 		path  string
 		frame *frame.Frame
+	}
+	notOpened struct {
+		path string
+		err  error
 	}
 )
 
@@ -94,13 +97,13 @@ func save(f *frame.Frame, path string, fresh bool) tea.Cmd {
 }
 
 // askOpen asks for a frame, a sidecar or a print.
-func (m *model) askOpen() tea.Cmd {
+func (m *model) askOpen(path string) tea.Cmd {
 	load := m.load
-	return m.file.Ask("open", m.desk.Path, notEmpty, func(path string) tea.Cmd {
+	return m.file.Ask("open", path, notEmpty, func(path string) tea.Cmd {
 		return func() tea.Msg {
 			f, err := load(path)
 			if err != nil {
-				return kit.Fail(fmt.Errorf("%s: %w", path, err))()
+				return notOpened{path, err}
 			}
 			return opened{path, f}
 		}
@@ -113,6 +116,11 @@ func (m *model) filed(msg tea.Msg) tea.Cmd {
 	case saved:
 		m.desk.Opened(msg.path)
 		return kit.Tell("saved as " + msg.path)
+	case notOpened: // the question stays, with what was wrong
+		if m.screen().Typing() || m.file.Open() {
+			return kit.Fail(msg.err)
+		}
+		return tea.Batch(m.askOpen(msg.path), kit.Fail(msg.err))
 	case opened:
 		if err := m.desk.Put("opened another frame", msg.frame); err != nil {
 			return kit.Fail(err)

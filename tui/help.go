@@ -26,7 +26,7 @@ func (m *model) helpLines() []string {
 func (m *model) helpView() string {
 	lines := m.helpLines()
 	rows := m.height - 1
-	columns := max(1, m.width/46)
+	columns := max(1, m.width/58)
 	if columns > 1 && len(lines) > rows {
 		per := rows
 		var blocks []string
@@ -43,7 +43,7 @@ func (m *model) helpView() string {
 }
 
 func (m *model) helpFoot(more bool) string {
-	text := " any key goes back"
+	text := " esc goes back"
 	if more {
 		text = " ↑ ↓ scroll   esc goes back"
 	}

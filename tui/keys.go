@@ -74,7 +74,7 @@ func (m *model) oneKey(k tea.KeyMsg) tea.Cmd {
 	case key.Matches(k, keySave):
 		return m.askSave()
 	case key.Matches(k, keyLoad):
-		return m.askOpen()
+		return m.askOpen(m.desk.Path)
 	case key.Matches(k, keyRest):
 		return tea.Suspend
 	case key.Matches(k, keyQuit):

@@ -20,11 +20,18 @@ func (m *model) leaveWords() string {
 	running, elsewhere := m.prints.Busy()
 	switch {
 	case running == 0:
-		return "Quit? Nothing is being rendered. y quits, any other key stays."
+		return "y quits, any other key stays. Nothing is being rendered."
 	case elsewhere:
-		return fmt.Sprintf("Quit? %d tiles in hand here go back; other workers go on. Finished tiles are kept. y quits, any other key stays.", running)
+		return fmt.Sprintf("y quits, any other key stays. %s back to the queue; other workers go on.", tiles(running))
 	}
-	return fmt.Sprintf("Quit? %d tiles in hand go back and the prints wait; leadline work goes on. Finished tiles are kept. y quits, any other key stays.", running)
+	return fmt.Sprintf("y quits, any other key stays. %s back to the queue; prints wait for leadline work.", tiles(running))
+}
+
+func tiles(n int) string {
+	if n == 1 {
+		return "1 tile goes"
+	}
+	return fmt.Sprintf("%d tiles go", n)
 }
 
 // answer takes the key after the question.

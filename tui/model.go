@@ -73,6 +73,9 @@ func (m *model) route(msg tea.Msg) tea.Cmd {
 		return m.key(msg)
 	case tea.MouseMsg:
 		m.session.dirty = true
+		if msg.Action == tea.MouseActionPress {
+			m.said = kit.Say{}
+		}
 		return m.mouse(msg)
 	case kit.Say:
 		m.said = msg
@@ -85,7 +88,7 @@ func (m *model) route(msg tea.Msg) tea.Cmd {
 		return m.session.save(m)
 	case sessionSaved:
 		return m.session.wrote(msg.err)
-	case saved, opened:
+	case saved, opened, notOpened:
 		return m.filed(msg)
 	case tea.ResumeMsg:
 		return tea.Batch(tea.ClearScreen, m.all(msg))

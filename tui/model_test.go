@@ -77,7 +77,7 @@ func (b *bench) do(cmd tea.Cmd, depth int) {
 			for _, c := range msg {
 				b.do(c, depth+1)
 			}
-		case kit.Say, kit.Go, kit.Changed, saved, opened, sessionSaved:
+		case kit.Say, kit.Go, kit.Changed, saved, opened, notOpened, sessionSaved:
 			_, next := b.Update(msg)
 			b.do(next, depth+1)
 		}
@@ -277,5 +277,41 @@ func TestNoKeyIsLost(t *testing.T) {
 	want := precision.Depth(doc.Frame.View.Height) + 20*math.Log10(1.5)
 	if got := precision.Depth(b.desk.Frame.View.Height); math.Abs(got-want) > 1e-3 {
 		t.Errorf("depth %v, not %v", got, want)
+	}
+}
+
+// TestMeshIsKept: a terminal that shows letters only does not make the maker's
+// choice of cells forgotten.
+func TestMeshIsKept(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "desk.json")
+	first := newBench(t, Options{Session: path})
+	first.keys("v")
+	want := first.desk.Mesh
+	first.send(saveTick{})
+	bare := newBench(t, Options{Session: path, Getenv: func(k string) string {
+		return map[string]string{"TERM": "xterm", "NO_COLOR": "1", "LANG": "C.UTF-8"}[k]
+	}})
+	if bare.desk.Mesh == want {
+		t.Fatal("cells of colour without colour")
+	}
+	bare.keys("+")
+	bare.send(saveTick{})
+	if again := newBench(t, Options{Session: path}); again.desk.Mesh != want {
+		t.Errorf("the cells are %v, not %v", again.desk.Mesh, want)
+	}
+}
+
+// TestFailedOpenStays keeps the question open with what was wrong.
+func TestFailedOpenStays(t *testing.T) {
+	b := newBench(t, Options{})
+	b.keys("ctrl+o")
+	b.text("gone.json")
+	b.keys("enter")
+	if !b.file.Open() || !b.said.Bad {
+		t.Errorf("open %v, said %q", b.file.Open(), b.said.Text)
+	}
+	b.text("p") // is text, and no command
+	if b.screen().Name() != "Compose" || !b.file.Open() {
+		t.Error("a letter was taken for a command")
 	}
 }

@@ -36,6 +36,7 @@ type session struct {
 	path  string // "": nothing is kept
 	dirty bool
 	busy  bool
+	mesh  string // the maker's choice, where this terminal cannot show it
 }
 
 // kept is what the file holds.
@@ -64,9 +65,13 @@ func (s *session) save(m *model) tea.Cmd {
 		return s.tick()
 	}
 	s.dirty, s.busy = false, true
+	mesh := m.desk.Mesh.String()
+	if m.desk.Depth == cells.None || m.desk.ASCII {
+		mesh = s.mesh
+	}
 	past, future := m.desk.History()
 	k := kept{Format: sessionFormat, Frame: m.desk.Frame, Path: m.desk.Path, Pinned: m.desk.Pinned, Screen: m.screen().Name(),
-		Mesh: m.desk.Mesh.String(), Seen: m.paper.Distance(), Marks: m.desk.Marks, Past: last(past, keptSteps), Future: last(future, keptSteps)}
+		Mesh: mesh, Seen: m.paper.Distance(), Marks: m.desk.Marks, Past: last(past, keptSteps), Future: last(future, keptSteps)}
 	path := s.path
 	return func() tea.Msg {
 		doc, err := json.Marshal(k)
@@ -118,6 +123,7 @@ func (s *session) reopen(d *kit.Desk, p *paper.Screen) (screen string, err error
 			os.Rename(s.path, aside))
 	}
 	d.Frame, d.Path, d.Pinned, d.Marks = k.Frame, k.Path, k.Pinned, k.Marks
+	s.mesh = k.Mesh
 	if mesh, err := cells.ParseMesh(k.Mesh); err == nil && d.Depth != cells.None && !d.ASCII {
 		d.Mesh = mesh // what this terminal cannot show is not taken over
 	}

@@ -30,7 +30,7 @@ type Target struct {
 // What a search may end with, apart from a context's error. Each offers a
 // Hint() with the cure.
 var (
-	ErrNone  error = &findError{"no such point within reach", "look around another point, or with another radius or a higher iteration limit"}
+	ErrNone  error = &findError{"no such point within reach", "look around another point, nearer or farther, or with a higher iteration limit"}
 	ErrJulia error = &findError{"Julia sets have no nuclei or Misiurewicz points", "look in the Mandelbrot set that the parameter comes from"}
 	ErrDeep  error = &findError{"the point lies deeper than numbers are written", fmt.Sprintf("look with a larger radius: numbers have at most %d digits", precision.MaxDigits)}
 	ErrAsked error = &findError{"no such search", "radius, iteration limit and period must be above zero, the power 2 or 3"}

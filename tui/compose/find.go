@@ -146,13 +146,29 @@ func (s *Screen) findNucleus(period int) tea.Cmd {
 
 // nucleus looks for a nucleus, of any period where none is asked for.
 func nucleus(ctx context.Context, t orbit.Target, period int) found {
-	n, err := orbit.FindNucleus(ctx, t, period)
+	n, err := nearest(ctx, t, period)
 	if err != nil {
 		return found{err: err}
 	}
 	a := &atom{frame.Point{Re: n.Re, Im: n.Im}, n.Period, n.Size.Abs()}
-	return found{point: a.at, atom: a, said: fmt.Sprintf("nucleus of period %s, its atom lies at depth %.2f; f h goes half way down, f a to the whole atom",
-		words.Count(int64(n.Period)), -a.size.Log2()*0.30103)}
+	return found{point: a.at, atom: a, said: fmt.Sprintf("nucleus of period %s; f a shows its whole atom, at depth %.2f, f h goes half way there",
+		words.Count(int64(n.Period)), -a.size.Mul(precision.ExtOf(atomRoom)).Log2()*0.30103)}
+}
+
+// nearest looks around the spot in circles that grow to the target's, so that
+// what lies under the plumb is found before what has a lower period farther off.
+func nearest(ctx context.Context, t orbit.Target, period int) (n *orbit.NucleusPoint, err error) {
+	if period > 0 {
+		return orbit.FindNucleus(ctx, t, period)
+	}
+	whole := t.Radius
+	for _, part := range []float64{1.0 / 14, 1.0 / 4, 1} {
+		t.Radius = whole.Mul(precision.ExtOf(part))
+		if n, err = orbit.FindNucleus(ctx, t, 0); err == nil || !errors.Is(err, orbit.ErrNone) {
+			return n, err
+		}
+	}
+	return nil, err
 }
 
 func (s *Screen) findMisiurewicz() tea.Cmd {
@@ -162,7 +178,7 @@ func (s *Screen) findMisiurewicz() tea.Cmd {
 			return found{err: err}
 		}
 		return found{point: frame.Point{Re: p.Re, Im: p.Im},
-			said: fmt.Sprintf("Misiurewicz point, preperiod %d, period %d", p.Preperiod, p.Period)}
+			said: fmt.Sprintf("Misiurewicz point, preperiod %d, period %d; from g d 50, say, f n finds a deep nucleus beside it", p.Preperiod, p.Period)}
 	})
 }
 
@@ -192,12 +208,13 @@ func (s *Screen) arrive(m found) tea.Cmd {
 	case errors.Is(m.err, context.Canceled):
 		return kit.Tell("the search was stopped")
 	case m.err != nil:
+		s.atom = nil
 		return kit.Fail(m.err)
 	}
 	if m.atom != nil {
 		s.atom = m.atom
 	}
-	s.plumb = plumb{}
+	s.plumb, s.under.text = plumb{}, ""
 	err := s.desk.Change("went to what was found", func(f *frame.Frame) error {
 		f.View.Centre, f.Ink.Drive.Fitted = m.point, nil
 		return nil
@@ -210,6 +227,9 @@ func (s *Screen) arrive(m found) tea.Cmd {
 
 // halfWay goes to the depth half way between here and the atom.
 func (s *Screen) halfWay() tea.Cmd {
+	if s.desk.Frame.View.Height.Ext().Cmp(s.atom.size.Mul(precision.ExtOf(atomRoom))) <= 0 {
+		return kit.Tell("this is as deep as the atom already; move aside, and f n finds another")
+	}
 	h := orbit.HalfWay(s.desk.Frame.View.Height.Ext(), s.atom.size, atomRoom)
 	return s.toAtom("went half way down", h)
 }

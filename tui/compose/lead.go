@@ -46,23 +46,27 @@ func (s *Screen) soundingLine(width, rows int) string {
 		names[row(depth(m.View))] = m.Name
 	}
 	lead := row(now)
+	signs := []string{"◆", "│", "┊", "┼", "▸"} // lead, cord, water below, figure, mark
+	if s.desk.ASCII {
+		signs = []string{"O", "|", ":", "+", ">"}
+	}
 	lines := make([]string, rows)
 	for y := range lines {
-		cord, knot := "┊", st.Faint
+		cord, knot := signs[2], st.Faint
 		switch {
 		case y == lead:
-			cord, knot = "◆", st.Lead
+			cord, knot = signs[0], st.Lead
 		case y < lead:
-			cord, knot = "│", st.Lead
+			cord, knot = signs[1], st.Lead
 		}
 		left, style := figures[y], st.Faint
 		if left != "" && y != lead {
-			cord = "┼"
+			cord = signs[3]
 		}
 		if y == lead {
 			left, style = depthFigure(now, width-2), st.Lead
 		} else if name, ok := names[y]; ok {
-			left, style, cord = name, st.Warn, "▸"
+			left, style, cord = name, st.Warn, signs[4]
 		}
 		figure := kit.Fit(left, width-2)
 		if len(left) < width-2 {

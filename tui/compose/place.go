@@ -37,6 +37,9 @@ func (s *Screen) askPlace(text string) tea.Cmd {
 	return s.ask.Ask("go to", strings.Join(strings.Fields(text), " "), check, func(t string) tea.Cmd {
 		f, err := parsePlace(t, s.desk.Frame)
 		if err == nil {
+			if !s.desk.Pinned {
+				f.Iteration.Limit = startLimit // the old one says nothing of another place
+			}
 			err = s.desk.Put("went to a place", f)
 		}
 		return kit.Fail(err)

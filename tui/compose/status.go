@@ -40,7 +40,7 @@ func (s *Screen) Status() string {
 		limit += " pinned"
 	}
 	parts = append(parts, part("limit", limit))
-	if p := d.Picture; p != nil {
+	if p := d.Picture; p != nil && (p.Whole || p.Pass > 0) {
 		parts = append(parts, part("undecided", words.Percent(p.Undecided)), part("inside", words.Percent(p.Inside)))
 	}
 	if t := d.Frame.View.Turn.Degrees(); t != 0 {

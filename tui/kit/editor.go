@@ -12,6 +12,7 @@ type Editor struct {
 	Label string
 	in    textinput.Model
 	open  bool
+	fresh bool // nothing was typed yet: the proposal gives way to what is
 	done  func(string) tea.Cmd
 	check func(string) error
 	fault error
@@ -27,6 +28,7 @@ func (e *Editor) Ask(label, text string, check func(string) error, done func(str
 	e.in.Cursor.SetMode(cursor.CursorStatic) // nothing blinks
 	e.in.SetValue(text)
 	e.in.CursorEnd()
+	e.fresh = text != ""
 	e.judge()
 	return e.in.Focus()
 }
@@ -52,6 +54,12 @@ func (e *Editor) Update(msg tea.Msg) tea.Cmd {
 			return e.done(e.in.Value())
 		}
 	}
+	if k, ok := msg.(tea.KeyMsg); ok {
+		if e.fresh && k.Type == tea.KeyRunes && !k.Alt {
+			e.in.SetValue("")
+		}
+		e.fresh = false
+	}
 	var cmd tea.Cmd
 	e.in, cmd = e.in.Update(msg)
 	e.judge()
@@ -72,11 +80,14 @@ func (e *Editor) View(s Style, width int) string {
 	if e.fault != nil {
 		text := e.fault.Error()
 		if h, ok := Hint(e.fault); ok {
-			text = h
+			text += ": " + h
 		}
 		tail = "  " + s.Warn.Render(text)
+	} else if aside := "  typing replaces it, an arrow keeps it"; e.fresh && width > ansi.StringWidth(e.Label+e.in.Value()+aside)+4 {
+		tail = s.Faint.Render(aside)
 	}
-	e.in.Width = max(8, width-ansi.StringWidth(e.Label)-3-min(ansi.StringWidth(tail), width/2))
+	room := ansi.StringWidth(e.in.Value()) + 1
+	e.in.Width = max(8, min(room, width-ansi.StringWidth(e.Label)-3-min(ansi.StringWidth(tail), width/2)))
 	e.in.SetCursor(e.in.Position()) // lays the text out in that width
 	return Fit(label+e.in.View()+tail, width)
 }
