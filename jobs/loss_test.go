@@ -25,7 +25,6 @@ func TestLosses(t *testing.T) {
 		}
 		// Alone at fault, with innocent tiles in the same workers' other slots.
 		deadly := add(t, q, AddOptions{})
-		lost(deadly, 5, "w0") // before: not counted
 		for i := range maxFaults {
 			w := fmt.Sprint("w", i+1)
 			lost(deadly, 0, w)
@@ -33,8 +32,16 @@ func TestLosses(t *testing.T) {
 				t.Errorf("the deadly tile, time %d: %v", i, failed)
 			}
 		}
-		if p := show(t, q, deadly); p.State != Failed || !strings.Contains(p.Reason, "in hand 3 times") || p.Hint == "" || p.Rescued != 7 {
+		if p := show(t, q, deadly); p.State != Failed || !strings.Contains(p.Reason, "in hand 3 times") || p.Hint == "" || p.Rescued != 6 {
 			t.Errorf("%+v", p)
+		}
+		// The same where another worker was lost before: it takes twice as many.
+		doubted := add(t, q, AddOptions{})
+		lost(doubted, 5, "v")
+		for i := range 2 * maxFaults {
+			if failed := lost(doubted, 2, fmt.Sprint("v", i)); failed != (i == 2*maxFaults-1) {
+				t.Errorf("the doubted tile, time %d: %v", i, failed)
+			}
 		}
 		// One of many that are lost at random.
 		storm := add(t, q, AddOptions{})

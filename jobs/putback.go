@@ -72,9 +72,10 @@ func (q *Queue) putFirst(ctx context.Context, t tx, o *order, k ticket) error {
 }
 
 // lose counts a task whose worker was lost with it. Workers are lost for
-// reasons of their own, too: a task is held to be the cause, and its print
-// fails, where it was in hand maxFaults times and at half or more of all losses
-// of workers with tasks of this print since its first; in any case at maxLosses.
+// reasons of their own, too. A task is held to be the cause, and its print
+// fails, where it was in hand at maxFaults losses and no other worker of this
+// print was lost meanwhile or shortly before; where others were, at twice as
+// many that are half of all; in any case at maxLosses.
 func lose(ctx context.Context, t tx, k ticket, worker string) (failed bool, err error) {
 	if _, err := t.exec(ctx, `UPDATE leadline_print SET rescued = rescued + 1 WHERE id = ?`, k.Print); err != nil {
 		return false, err
@@ -84,9 +85,10 @@ func lose(ctx context.Context, t tx, k ticket, worker string) (failed bool, err 
 	}
 	var own, all int
 	err = one(ctx, t, `SELECT count(DISTINCT CASE WHEN idx = ? THEN worker END), count(DISTINCT worker) FROM leadline_loss
-		WHERE print = ? AND id >= (SELECT min(id) FROM leadline_loss WHERE print = ? AND idx = ?)`,
-		[]any{k.Index, k.Print, k.Print, k.Index}, &own, &all)
-	if err != nil || own < maxFaults || (2*own < all && own < maxLosses) {
+		WHERE print = ? AND id >= (SELECT min(id) FROM leadline_loss WHERE print = ? AND idx = ?) - ?`,
+		[]any{k.Index, k.Print, k.Print, k.Index, lossesBefore}, &own, &all)
+	alone, often := own >= maxFaults && own == all, own >= 2*maxFaults && 2*own >= all
+	if err != nil || !(alone || often || own >= maxLosses) {
 		return false, err
 	}
 	return true, fail(ctx, t, k.Print, fmt.Sprintf("%s was in hand %d times when its worker was lost", k, own), faultHint)

@@ -27,6 +27,8 @@ var (
 const (
 	maxFaults = 3
 	maxLosses = 12
+	// lossesBefore is how many losses before a task's first are looked at.
+	lossesBefore = 8
 )
 
 // panicError is a panic in a task.
