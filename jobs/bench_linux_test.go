@@ -12,7 +12,7 @@ import (
 // tests.
 func BenchmarkRestart(b *testing.B) {
 	if testing.Short() {
-		b.Skip("waits for a lease of ten seconds")
+		b.Skip("left out by -short: it waits for a lease of ten seconds")
 	}
 	benchEngines(b, func(b *testing.B, d database, q *Queue) {
 		var total time.Duration

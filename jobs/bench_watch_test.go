@@ -15,7 +15,7 @@ import (
 // what share of the worker's speed is lost.
 func BenchmarkWatchers(b *testing.B) {
 	if testing.Short() {
-		b.Skip("takes about fifteen seconds")
+		b.Skip("left out by -short: it takes about fifteen seconds")
 	}
 	benchEngines(b, func(b *testing.B, d database, q *Queue) {
 		id := halfDone(b, q)

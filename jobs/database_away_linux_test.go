@@ -42,7 +42,7 @@ func once(t *testing.T, q *Queue, p *Print, want *render.Result) {
 // themselves, and only what was in hand may have to be rendered again.
 func TestDatabaseAway(t *testing.T) {
 	if testing.Short() {
-		t.Skip("starts a server of its own")
+		t.Skip("left out by -short: it starts a server of its own")
 	}
 	postgres(t) // or skip
 	t.Parallel()

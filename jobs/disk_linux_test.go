@@ -16,7 +16,7 @@ func disk(t *testing.T, size string) string {
 	t.Helper()
 	dir := t.TempDir()
 	if err := syscall.Mount("tmpfs", dir, "tmpfs", 0, "size="+size); err != nil {
-		t.Skipf("a small disk can only be mounted by root: %v", err)
+		t.Skipf("the right to mount a small disk (root) is missing: %v", err)
 	}
 	t.Cleanup(func() {
 		if err := syscall.Unmount(dir, syscall.MNT_DETACH); err != nil {

@@ -14,7 +14,7 @@ import (
 // that are used outside the tests.
 func TestKilledWorker(t *testing.T) {
 	if testing.Short() {
-		t.Skip("waits for a lease of ten seconds")
+		t.Skip("left out by -short: it waits for a lease of ten seconds")
 	}
 	t.Parallel()
 	engines(t, func(t *testing.T, d database) {

@@ -42,16 +42,16 @@ func newNetwork(t *testing.T) *network {
 		}
 	}
 	if os.Geteuid() != 0 {
-		t.Skip("network namespaces can only be made by root")
+		t.Skip("root is missing: only it can make network namespaces")
 	}
 	n := &network{t, fmt.Sprintf("leadline%d", os.Getpid())}
 	if err := ip("netns", "add", n.hub()); err != nil {
-		t.Skipf("network namespaces cannot be made here: %v", err)
+		t.Skipf("the right to make network namespaces is missing: %v", err)
 	}
 	t.Cleanup(func() { n.remove(n.hub()) })
 	n.must("-n", n.hub(), "link", "set", "lo", "up")
 	if err := ip("-n", n.hub(), "link", "add", "switch", "type", "bridge"); err != nil {
-		t.Skipf("the kernel makes no bridges: %v", err)
+		t.Skipf("bridges are missing from the kernel: %v", err)
 	}
 	n.must("-n", n.hub(), "addr", "add", hubAddress+"/24", "dev", "switch")
 	n.must("-n", n.hub(), "link", "set", "switch", "up")
@@ -96,7 +96,7 @@ func (n *network) server() *server {
 	n.t.Helper()
 	id, ok := other()
 	if !ok {
-		n.t.Skip("package postgresql made no user postgres")
+		n.t.Skip("the user postgres is missing (Debian package postgresql)")
 	}
 	s, err := newServer()
 	if errors.Is(err, errNoPostgres) {
@@ -144,7 +144,7 @@ func (n *network) spawn(i int, s *server, env ...string) *process {
 // for longer than their leases; the third does the tile meanwhile.
 func TestCutOffWorker(t *testing.T) {
 	if testing.Short() {
-		t.Skip("starts a server of its own, and machines")
+		t.Skip("left out by -short: it starts a server of its own, and machines")
 	}
 	t.Parallel()
 	f, want := square(t)

@@ -177,7 +177,7 @@ func TestFullDisk(t *testing.T) {
 // TestServerRestart takes the database away in the middle of a print.
 func TestServerRestart(t *testing.T) {
 	if testing.Short() {
-		t.Skip("starts a server of its own")
+		t.Skip("left out by -short: it starts a server of its own")
 	}
 	postgres(t) // or skip
 	t.Parallel()

@@ -22,7 +22,7 @@ const tortureVariable = "LEADLINE_TORTURE"
 // pixels of render.Print and every tile counted once.
 func TestTorture(t *testing.T) {
 	if testing.Short() {
-		t.Skip("takes about twenty seconds")
+		t.Skip("left out by -short: it takes about twenty seconds")
 	}
 	t.Parallel()
 	side, slow := "160px", "40ms"

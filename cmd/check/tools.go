@@ -15,7 +15,7 @@ var debianPackages = []string{
 	"liblcms2-utils", "argyll", "argyll-ref", "icc-profiles-free", "exiv2", "libxml2-utils", "python3-jsonschema",
 	"libtiff-tools", "qemu-user-static", "tmux", "gcc", "libc6-dev", "clang", "libmpfr-dev", "libgmp-dev", "libpng-dev",
 	"munge", "slurmctld", "slurmd", "slurm-client", "python3-yaml", "postgresql",
-	"chromium", "openssl", "curl", "iproute2",
+	"chromium", "openssl", "curl", "iproute2", "libpaper-utils",
 }
 
 // installTools installs the missing packages where it may. It never fails: what stays missing becomes notes.

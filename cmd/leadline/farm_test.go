@@ -54,10 +54,10 @@ PartitionName=all Nodes=%[1]s Default=YES State=UP
 func startCluster(t *testing.T) *cluster {
 	t.Helper()
 	if testing.Short() {
-		t.Skip("starts a scheduler")
+		t.Skip("left out by -short: it starts a scheduler")
 	}
 	if os.Geteuid() != 0 {
-		t.Skip("a Slurm of one's own needs root")
+		t.Skip("root is missing: only it can start a Slurm of its own")
 	}
 	for program, pkg := range map[string]string{"munged": "munge", "slurmctld": "slurmctld", "slurmd": "slurmd", "sbatch": "slurm-client"} {
 		if _, err := exec.LookPath(program); err != nil {

@@ -25,7 +25,7 @@ type terminal struct {
 func inTerminal(t *testing.T, dir string, width, height int, env ...string) *terminal {
 	t.Helper()
 	if testing.Short() {
-		t.Skip("takes some seconds")
+		t.Skip("left out by -short: it takes some seconds")
 	}
 	if _, err := exec.LookPath("tmux"); err != nil {
 		t.Skip("tmux is missing (Debian: tmux)")

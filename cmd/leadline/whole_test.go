@@ -68,7 +68,7 @@ const wide = `{"format": "leadline.frame/1", "set": {"kind": "mandelbrot"},
 func TestMemory(t *testing.T) {
 	t.Parallel()
 	if testing.Short() {
-		t.Skip("renders 15 million pixels")
+		t.Skip("left out by -short: it renders 15 million pixels")
 	}
 	dir := t.TempDir()
 	frame := filepath.Join(dir, "wide.frame.json")

@@ -209,7 +209,7 @@ func TestWaitForTheFirst(t *testing.T) {
 	defer unlock()
 	if u, busy := lock(filepath.Join(dir, printName)); !busy {
 		u()
-		t.Skip("no locks on this file system")
+		t.Skip("the file system of the temporary folder has no locks (flock)")
 	}
 	k, waits, end := task(dir, 1, 1), make(chan int, 9), make(chan error)
 	k.Waiting = func() { waits <- 1 }

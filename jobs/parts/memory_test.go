@@ -14,7 +14,7 @@ import (
 // the heap at every band: neither side holds more than a few bands of 2 MB.
 func TestMemoryOfAStripe(t *testing.T) {
 	if testing.Short() {
-		t.Skip("writes and reads 200 MB")
+		t.Skip("left out by -short: it writes and reads 200 MB")
 	}
 	const width, rows, bands = 5461, 64, 100 // 2 MB a band
 	path, h := filepath.Join(t.TempDir(), "part"), head{I: 1, N: 1}

@@ -310,7 +310,7 @@ func TestSchemaAgreesDebian(t *testing.T) {
 		t.Skip("package python3-jsonschema is missing")
 	}
 	if testing.Short() {
-		t.Skip("starts another program")
+		t.Skip("left out by -short: it starts another program")
 	}
 	dir := t.TempDir()
 	args := map[string][]string{"frame": nil, "sidecar": nil}

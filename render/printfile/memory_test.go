@@ -33,7 +33,7 @@ func TestMemoryIsBounded(t *testing.T) {
 		t.Skip("the race detector needs memory of its own")
 	}
 	if testing.Short() {
-		t.Skip("writes a large file")
+		t.Skip("left out by -short: it writes a large file")
 	}
 	const width, height, workers = 4000, 5_000, 2
 	const limit = 48 << 20
