@@ -48,7 +48,7 @@ func (q *Queue) measureOne(ctx context.Context, p *Print) error {
 	}
 	err := one(ctx, q.e.read(), `SELECT count(*), cast(coalesce(sum(pixels), 0) as bigint) FROM leadline_tile
 		WHERE print = ? AND state = 'done' AND idx >= 0`, []any{p.ID}, &p.Done, &p.Pixel)
-	if err != nil || p.State != Rendering || p.Paused {
+	if err != nil || p.State != Rendering || p.Paused || p.Progress.Workers == 0 { // nobody works: no rate
 		return err
 	}
 	var n, pixels, elapsed int64

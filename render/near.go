@@ -43,16 +43,6 @@ func NewProbeNear(ctx context.Context, f *frame.Frame, old *Plan, o Options) (p 
 	return p, reused, p.iterate(ctx, o)
 }
 
-// NewPlanNear is NewPlan around the reference orbit of an earlier plan where
-// that serves.
-func NewPlanNear(ctx context.Context, f *frame.Frame, old *Plan, o Options) (*Plan, error) {
-	p, _, err := NewProbeNear(ctx, f, old, o)
-	if err != nil {
-		return nil, err
-	}
-	return p, p.finish(ctx, o)
-}
-
 // Serves reports whether NewProbeNear would do without a new reference orbit:
 // the plan's own serves, or none is needed. A nil plan serves frames that need
 // none.

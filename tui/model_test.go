@@ -315,3 +315,13 @@ func TestFailedOpenStays(t *testing.T) {
 		t.Error("a letter was taken for a command")
 	}
 }
+
+// TestLettersInOneMessage takes letters that came in one message one by one, as
+// they do from a key held down or from a fast hand.
+func TestLettersInOneMessage(t *testing.T) {
+	b := newBench(t, Options{})
+	b.send(tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune("++2")})
+	if steps, _ := b.desk.Steps(); steps != 2 || b.screen().Name() != "Ink" {
+		t.Errorf("%d steps, on %s", steps, b.screen().Name())
+	}
+}

@@ -56,28 +56,21 @@ func printTable(w io.Writer, all []jobs.Print) error {
 	fmt.Fprintln(t, "no\tprio\tstate\ttiles\tleft\tprint")
 	for i := range all {
 		p := &all[i]
-		fmt.Fprintf(t, "%d\t%d\t%s\t%d/%d\t%s\t%s\n", p.ID, p.Priority, stateWords(p), p.Done, p.Tiles, leftWords(p), p.Out)
+		fmt.Fprintf(t, "%d\t%d\t%s\t%d/%d\t%s\t%s\n", p.ID, p.Priority, p.Word(), p.Done, p.Tiles, leftWords(p), p.Out)
 	}
 	return t.Flush()
 }
 
-// stateWords is the state, or that the print is held.
-func stateWords(p *jobs.Print) string {
-	if p.Paused {
-		return "paused"
-	}
-	return string(p.State)
-}
-
 // leftWords is the time to go with its range.
 func leftWords(p *jobs.Print) string {
+	left, between := p.LeftWords()
 	switch {
-	case p.Left <= 0 || p.Paused || p.State != jobs.Rendering:
+	case left == "":
 		return "-"
-	case p.LeftHigh <= 0 || words.Span(p.LeftLow) == words.Span(p.LeftHigh):
-		return words.Span(p.Left)
+	case between == "":
+		return left
 	}
-	return words.Span(p.Left) + ", " + words.Between(p.LeftLow, p.LeftHigh)
+	return left + ", " + between
 }
 
 func queueShowCommand() *cobra.Command {
@@ -120,7 +113,7 @@ func showPrint(w io.Writer, p *jobs.Print, asJSON bool) error {
 	}
 	fmt.Fprintf(w, "print %d  %s\n", p.ID, p.Title)
 	row := func(name, format string, a ...any) { fmt.Fprintf(w, "  %-9s %s\n", name, fmt.Sprintf(format, a...)) }
-	row("state", "%s", stateWords(p))
+	row("state", "%s", p.Word())
 	if p.Reason != "" {
 		row("reason", "%s", p.Reason)
 	}

@@ -31,7 +31,7 @@ func actions(p *jobs.Print) []action {
 	switch {
 	case p.State == jobs.Done:
 		return []action{remove}
-	case over(p):
+	case p.Over():
 		return []action{again, remove}
 	case p.Paused:
 		return []action{resume, cancel}

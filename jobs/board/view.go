@@ -69,13 +69,13 @@ func newScale(share float64) scale {
 // newCard describes a print; mark is its picture's.
 func newCard(p *jobs.Print, mark string) card {
 	done := share(p)
-	c := card{ID: p.ID, Name: name(p), File: p.Out, State: stateWord(p), Share: percent(done), Scale: newScale(done),
-		Left: left(p), Note: p.Reason, Cure: p.Hint, Moving: moving(p), Over: over(p), Good: p.State == jobs.Done}
+	c := card{ID: p.ID, Name: name(p), File: p.Out, State: p.Word(), Share: percent(done), Scale: newScale(done),
+		Left: left(p), Note: p.Reason, Cure: p.Hint, Moving: moving(p), Over: p.Over(), Good: p.State == jobs.Done}
 	c.Tiles = fmt.Sprintf("%s of %s", words.Count(int64(p.Done)), words.Plural(p.Tiles, "tile", "tiles"))
 	if p.Rate > 0 {
 		c.Rate = words.Amount(p.Rate, "px/s")
 	}
-	if !over(p) && !p.Paused && p.Progress.Workers == 0 {
+	if !p.Over() && !p.Paused && p.Progress.Workers == 0 {
 		c.Note = fmt.Sprintf("No worker of release %s with numerics %d is there.", p.Release, p.Numerics)
 		c.Cure = "leadline work, on this machine or another, goes on with it"
 	}
@@ -125,7 +125,7 @@ func facts(p *jobs.Print) []fact {
 
 // able says who could work on a print that is not over.
 func able(p *jobs.Print) string {
-	if over(p) {
+	if p.Over() {
 		return ""
 	}
 	return fmt.Sprintf("%d that could work on it", p.Progress.Workers)
@@ -174,7 +174,7 @@ func newHome(s *sight, all bool) *home {
 	done := make([]*jobs.Print, 0, len(s.Prints))
 	for i := range s.Prints {
 		switch p := &s.Prints[i]; {
-		case over(p):
+		case p.Over():
 			done = append(done, p)
 		case moving(p):
 			h.Now = append(h.Now, newCard(p, s.marks[p.ID]))

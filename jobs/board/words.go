@@ -7,7 +7,6 @@ import (
 	"time"
 
 	"leadline/jobs"
-	"leadline/render/words"
 )
 
 // name is what a print is called: its title, else its file.
@@ -16,19 +15,6 @@ func name(p *jobs.Print) string {
 		return p.Title
 	}
 	return filepath.Base(p.Out)
-}
-
-// stateWord is the state, or that the print is held.
-func stateWord(p *jobs.Print) string {
-	if p.Paused {
-		return "paused"
-	}
-	return string(p.State)
-}
-
-// over says whether nothing more happens to a print by itself.
-func over(p *jobs.Print) bool {
-	return p.State == jobs.Done || p.State == jobs.Failed || p.State == jobs.Cancelled
 }
 
 // moving says whether a print is being worked on, or could be.
@@ -51,13 +37,14 @@ func percent(share float64) string {
 
 // left is the time to go with its range; "" where nothing is known.
 func left(p *jobs.Print) string {
+	left, between := p.LeftWords()
 	switch {
-	case p.Left <= 0 || p.Paused || p.State != jobs.Rendering:
+	case left == "":
 		return ""
-	case p.LeftHigh <= 0 || words.Span(p.LeftLow) == words.Span(p.LeftHigh):
-		return words.Span(p.Left) + " left"
+	case between == "":
+		return left + " left"
 	}
-	return words.Span(p.Left) + " left, " + words.Between(p.LeftLow, p.LeftHigh)
+	return left + " left, " + between
 }
 
 // when writes a moment in this machine's zone.

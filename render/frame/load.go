@@ -36,6 +36,11 @@ func isSidecar(n *node) bool {
 
 // Load reads a frame or a sidecar from a file, at most MaxDocument bytes of it.
 func Load(path string) (*Document, error) {
+	return load(path, ParseAny)
+}
+
+// load reads a document of at most MaxDocument bytes from a file.
+func load[T any](path string, parse func([]byte) (*T, error)) (*T, error) {
 	file, err := os.Open(path)
 	if err != nil {
 		return nil, err
@@ -43,9 +48,9 @@ func Load(path string) (*Document, error) {
 	defer file.Close()
 	data, err := io.ReadAll(io.LimitReader(file, MaxDocument+1))
 	if err != nil {
-		return nil, fmt.Errorf("reading frame: %w", err)
+		return nil, fmt.Errorf("reading a document: %w", err)
 	}
-	doc, err := ParseAny(data)
+	doc, err := parse(data)
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", path, err)
 	}

@@ -1,10 +1,6 @@
 package frame
 
 import (
-	"fmt"
-	"io"
-	"os"
-
 	"leadline/palette"
 )
 
@@ -35,22 +31,7 @@ type rampDocument struct {
 func ParseRamp(data []byte) (*RampFile, error) { return read(data, rampFileOf) }
 
 // LoadRamp reads a ramp's file, at most MaxDocument bytes of it.
-func LoadRamp(path string) (*RampFile, error) {
-	file, err := os.Open(path)
-	if err != nil {
-		return nil, err
-	}
-	defer file.Close()
-	data, err := io.ReadAll(io.LimitReader(file, MaxDocument+1))
-	if err != nil {
-		return nil, fmt.Errorf("reading ramp: %w", err)
-	}
-	r, err := ParseRamp(data)
-	if err != nil {
-		return nil, fmt.Errorf("%s: %w", path, err)
-	}
-	return r, nil
-}
+func LoadRamp(path string) (*RampFile, error) { return load(path, ParseRamp) }
 
 // Marshal writes the ramp's document in its canonical form. A ramp that
 // ParseRamp would not take is not written; the error is then a Faults.

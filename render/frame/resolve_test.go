@@ -184,7 +184,7 @@ func TestLoad(t *testing.T) {
 	if err := os.WriteFile(bad, []byte(`{"format": "leadline.frame/1"}`), 0o600); err != nil {
 		t.Fatal(err)
 	}
-	for path, word := range map[string]string{big: "larger than", bad: bad, dir: "reading frame",
+	for path, word := range map[string]string{big: "larger than", bad: bad, dir: "reading a document",
 		filepath.Join(dir, "none"): "no such file"} {
 		if doc, err := Load(path); err == nil || doc != nil || !strings.Contains(err.Error(), word) {
 			t.Errorf("%s: %v, %v", path, doc, err)

@@ -176,13 +176,6 @@ func (e *Engine) read(ctx context.Context, p *render.Plan) {
 	}
 }
 
-// current is the latest plan, nil before the first.
-func (e *Engine) current() *render.Plan {
-	e.mu.Lock()
-	defer e.mu.Unlock()
-	return e.plan
-}
-
 // Field is the field at a point of the unscaled lattice of the frame that was
 // asked for last. Not ok until the plan for it is made. It takes as long as one
 // sample.

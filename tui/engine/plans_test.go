@@ -1,9 +1,6 @@
 package engine
 
 import (
-	"context"
-	"image"
-	"math"
 	"testing"
 
 	"leadline/render"
@@ -51,47 +48,4 @@ func TestAheadServes(t *testing.T) {
 		t.Error("no orbit was computed ahead")
 	}
 	holds(t, p, false)
-}
-
-// TestWindow has a patch be the print's own pixels.
-func TestWindow(t *testing.T) {
-	d := newDesk(t)
-	f := load(t, "gull-archipelago")
-	d.finish(t, Request{Frame: f, Size: size(12, 8), Pinned: true})
-	rect := image.Rect(1000, 700, 1012, 709)
-	p, err := d.Window(t.Context(), f, rect)
-	if err != nil {
-		t.Fatal(err)
-	}
-	plan, err := render.NewPlan(t.Context(), f, render.Options{})
-	if err != nil {
-		t.Fatal(err)
-	}
-	c := render.NewCanvas(rect)
-	n, err := plan.Tile(t.Context(), c, rect, 1)
-	if err != nil {
-		t.Fatal(err)
-	}
-	off := 0
-	for i, got := range p.Colours {
-		for j, v := range []uint8{got.R, got.G, got.B} {
-			// The sheet is sRGB: the byte nearest to the 16-bit code.
-			code := float64(uint16(c.Pix[i*6+2*j])<<8|uint16(c.Pix[i*6+2*j+1])) / 257
-			if math.Abs(float64(v)-code) > 0.5001 {
-				off++
-			}
-		}
-	}
-	if off > 0 || p.Counts.Pixels != n.Pixels || p.Counts.Samples != n.Samples || p.Rect != rect {
-		t.Errorf("%d bytes differ; %+v, the print has %+v", off, p.Counts, n)
-	}
-	ctx, cancel := context.WithCancel(t.Context())
-	cancel()
-	if _, err := d.Window(ctx, f, rect); err == nil {
-		t.Error("a window after the end")
-	}
-	var none *Engine
-	if _, ok := none.Field(1, 1); ok || none.PerSample() != 0 {
-		t.Error("no engine knows something")
-	}
 }

@@ -145,15 +145,6 @@ func TestRunBackToItsBeginning(t *testing.T) {
 	}
 }
 
-// Letters of a key held down come in one message; each counts.
-func TestLettersInOneMessage(t *testing.T) {
-	s := testScreen(t, testFrame(t, "", "srgb"))
-	s.Update(tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune("]]]")})
-	if s.hand != (place{aStop, 3}) {
-		t.Errorf("in hand is %v", s.hand)
-	}
-}
-
 // Pasted text is taken for a colour, which is asked for once more.
 func TestPastedColour(t *testing.T) {
 	s := testScreen(t, testFrame(t, "", "srgb"))

@@ -79,9 +79,6 @@ func (s *Screen) key(k tea.KeyMsg) tea.Cmd {
 		s.shut()
 		return s.askColour(string(k.Runes))
 	}
-	if k.Type == tea.KeyRunes && len(k.Runes) > 1 {
-		return s.each(k)
-	}
 	s.run.goes = false
 	cmd := s.obey(k)
 	if !s.run.goes {
@@ -89,16 +86,6 @@ func (s *Screen) key(k tea.KeyMsg) tea.Cmd {
 	}
 	s.settle()
 	return cmd
-}
-
-// each takes letters that came in one message, as they do from a key held down,
-// one by one.
-func (s *Screen) each(k tea.KeyMsg) tea.Cmd {
-	var cmds []tea.Cmd
-	for _, r := range k.Runes {
-		cmds = append(cmds, s.key(tea.KeyMsg{Type: tea.KeyRunes, Runes: []rune{r}, Alt: k.Alt}))
-	}
-	return tea.Batch(cmds...)
 }
 
 func (s *Screen) obey(k tea.KeyMsg) tea.Cmd {

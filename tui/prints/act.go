@@ -70,7 +70,7 @@ func (e *refusal) Error() string { return e.what }
 func (e *refusal) Hint() string { return e.cure }
 
 func refuse(p *jobs.Print, what, cure string) tea.Cmd {
-	state := "is " + stateWord(p)
+	state := "is " + p.Word()
 	if p.State == jobs.Failed {
 		state = "has failed"
 	}
@@ -79,7 +79,7 @@ func refuse(p *jobs.Print, what, cure string) tea.Cmd {
 
 // pause pauses a print or goes on with it.
 func (s *Screen) pause(p *jobs.Print) tea.Cmd {
-	if over(p) {
+	if p.Over() {
 		return refuse(p, "there is nothing to pause", "only what is still to be made can be paused")
 	}
 	id := p.ID
@@ -92,7 +92,7 @@ func (s *Screen) pause(p *jobs.Print) tea.Cmd {
 
 // cancel gives up a print after a question.
 func (s *Screen) cancel(p *jobs.Print) tea.Cmd {
-	if over(p) {
+	if p.Over() {
 		return refuse(p, "there is nothing to cancel", "r takes it off the list")
 	}
 	id := p.ID
@@ -114,7 +114,7 @@ func (s *Screen) anew(p *jobs.Print) tea.Cmd {
 
 // move gives a print the priority before (-1) or after (+1).
 func (s *Screen) move(p *jobs.Print, by int) tea.Cmd {
-	if over(p) {
+	if p.Over() {
 		return refuse(p, "there is nothing to move", "only what is still to be made can be moved")
 	}
 	id, to := p.ID, p.Priority+by
@@ -128,7 +128,7 @@ func (s *Screen) move(p *jobs.Print, by int) tea.Cmd {
 
 // remove takes a print off the list after a question.
 func (s *Screen) remove(p *jobs.Print) tea.Cmd {
-	if !over(p) {
+	if !p.Over() {
 		return refuse(p, "it cannot be taken off the list", "x cancels it first")
 	}
 	id := p.ID
@@ -146,7 +146,7 @@ func (s *Screen) remove(p *jobs.Print) tea.Cmd {
 func (s *Screen) news(now []jobs.Print) tea.Cmd {
 	was := map[int64]bool{}
 	for i := range s.sight.prints {
-		was[s.sight.prints[i].ID] = !over(&s.sight.prints[i])
+		was[s.sight.prints[i].ID] = !s.sight.prints[i].Over()
 	}
 	var all []tea.Cmd
 	for i := range now {

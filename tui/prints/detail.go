@@ -19,7 +19,7 @@ const labelWidth = 9
 func (s *Screen) facts(p *jobs.Print, width int) []string {
 	st := s.desk.Style
 	f := &factList{width: width, label: st.Faint, text: st.Text}
-	f.lines = append(f.lines, row{{stateSign(p) + " " + stateWord(p), stateStyle(st, p).Bold(true)},
+	f.lines = append(f.lines, row{{stateSign(p) + " " + p.Word(), stateStyle(st, p).Bold(true)},
 		{fmt.Sprintf("  %s of %s, %s", words.Count(int64(p.Done)), words.Plural(p.Tiles, "tile", "tiles"), percent(share(p))), st.Text}}.render(width, nil))
 	f.lines = append(f.lines, row(tileBar(st, p, min(width, 60))).render(width, nil))
 	if p.Reason != "" {
@@ -35,7 +35,7 @@ func (s *Screen) facts(p *jobs.Print, width int) []string {
 	f.fact("size", sizeWords(p), "")
 	f.fact("priority", fmt.Sprintf("%d (1 is first, 4 last)", p.Priority), "")
 	f.fact("tasks", fmt.Sprintf("%s begun, %s rescued from silent workers", words.Count(p.Attempts), words.Count(p.Rescued)), "")
-	if !over(p) {
+	if !p.Over() {
 		f.fact("workers", fmt.Sprintf("%d that could work on it", p.Progress.Workers), "")
 	}
 	f.fact("added", when(p.Added), "")
@@ -55,7 +55,7 @@ func (s *Screen) facts(p *jobs.Print, width int) []string {
 func (s *Screen) nobody(f *factList, p *jobs.Print) {
 	st := s.desk.Style
 	switch {
-	case over(p) || p.Paused || p.Progress.Workers > 0:
+	case p.Over() || p.Paused || p.Progress.Workers > 0:
 	case p.Release != render.Release || p.Numerics != render.Numerics:
 		f.say(st.Warn, fmt.Sprintf("No worker of release %s with numerics %d is there; this is %s with %d.",
 			p.Release, p.Numerics, render.Release, render.Numerics))

@@ -102,7 +102,7 @@ func (s *Screen) Busy() (running int, elsewhere bool) {
 	}
 	for i := range s.sight.prints {
 		p := &s.sight.prints[i] // counts who is alive by the queue's own clock
-		elsewhere = elsewhere || !over(p) && p.Release == render.Release && p.Numerics == render.Numerics && p.Progress.Workers > here
+		elsewhere = elsewhere || !p.Over() && p.Release == render.Release && p.Numerics == render.Numerics && p.Progress.Workers > here
 	}
 	return running, elsewhere
 }

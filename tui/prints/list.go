@@ -27,7 +27,7 @@ func columns(width, digits int) []column {
 	all := []column{
 		{"", digits, true, func(s kit.Style, p *jobs.Print, _ int) []span { return []span{{fmt.Sprint(p.ID), s.Faint}} }},
 		{"state", 12, false, func(s kit.Style, p *jobs.Print, _ int) []span {
-			return []span{{stateSign(p) + " " + stateWord(p), stateStyle(s, p)}}
+			return []span{{stateSign(p) + " " + p.Word(), stateStyle(s, p)}}
 		}},
 		{"print", 0, false, nameCell},
 	}
@@ -64,7 +64,7 @@ func text(f func(*jobs.Print) string) func(kit.Style, *jobs.Print, int) []span {
 }
 
 func rateWords(p *jobs.Print) string {
-	if p.Rate <= 0 || p.Paused || over(p) {
+	if p.Rate <= 0 || p.Paused || p.Over() {
 		return ""
 	}
 	return words.Amount(p.Rate, "px/s")

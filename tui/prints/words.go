@@ -20,19 +20,6 @@ func title(p *jobs.Print) string {
 	return clean(filepath.Base(p.Out))
 }
 
-// over says whether nothing more happens to a print by itself.
-func over(p *jobs.Print) bool {
-	return p.State == jobs.Done || p.State == jobs.Failed || p.State == jobs.Cancelled
-}
-
-// stateWord is the state, or that the print is held.
-func stateWord(p *jobs.Print) string {
-	if p.Paused {
-		return "paused"
-	}
-	return string(p.State)
-}
-
 // stateSign tells states apart without colour, in one cell each, with characters
 // of WGL4 that nearly every font has.
 func stateSign(p *jobs.Print) string {
@@ -86,13 +73,11 @@ func moving(p *jobs.Print) bool { return p.Left > 0 && !p.Paused && p.State == j
 
 // leftWords is the time to go with its range; "" where nothing is known.
 func leftWords(p *jobs.Print) string {
-	switch {
-	case !moving(p):
-		return ""
-	case p.LeftHigh <= 0:
-		return words.Span(p.Left)
+	left, between := p.LeftWords()
+	if between == "" {
+		return left
 	}
-	return words.Span(p.Left) + ", " + words.Between(p.LeftLow, p.LeftHigh)
+	return left + ", " + between
 }
 
 // leftShort is the time to go and how well it is known.
@@ -128,7 +113,7 @@ func overall(all []jobs.Print) (o outlook) {
 	for i := range all {
 		p := &all[i]
 		switch {
-		case over(p):
+		case p.Over():
 			o.over++
 			continue
 		case p.Paused:

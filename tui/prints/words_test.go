@@ -100,7 +100,7 @@ func TestNeverColourAlone(t *testing.T) {
 	f := scene()
 	for i := range f.prints {
 		p := &f.prints[i]
-		signs[stateSign(p)], said[stateWord(p)] = true, true
+		signs[stateSign(p)], said[p.Word()] = true, true
 		if ansi.StringWidth(stateSign(p)) != 1 {
 			t.Errorf("the sign of %s is not one cell", p.State)
 		}
