@@ -128,6 +128,13 @@ func (m *model) show(name string) tea.Cmd {
 func (m *model) small() bool { return m.width < leastWidth || m.height < leastHeight }
 
 func (m *model) View() string {
+	if m.desk.ASCII {
+		return inASCII(m.view())
+	}
+	return m.view()
+}
+
+func (m *model) view() string {
 	switch {
 	case m.width == 0:
 		return ""

@@ -325,3 +325,28 @@ func TestLettersInOneMessage(t *testing.T) {
 		t.Errorf("%d steps, on %s", steps, b.screen().Name())
 	}
 }
+
+// TestASCII has nothing but ASCII on any screen where the locale has no more,
+// and every line as wide as ever.
+func TestASCII(t *testing.T) {
+	b := newBench(t, Options{Getenv: func(k string) string { return map[string]string{"TERM": "xterm-256color", "LC_ALL": "C"}[k] }})
+	if !b.desk.ASCII {
+		t.Fatal("the locale was not understood")
+	}
+	if err := b.desk.Change("named", func(f *frame.Frame) error { f.Title = "Ebbe Größe 日"; return nil }); err != nil {
+		t.Fatal(err)
+	}
+	for i := range b.screens {
+		b.keys(fmt.Sprint(i + 1))
+		for _, helping := range []bool{false, true} {
+			b.helping = helping
+			for _, r := range b.View() {
+				if r >= 0x80 {
+					t.Fatalf("%s shows %q", b.screen().Name(), r)
+				}
+			}
+			b.fits(80, 24)
+		}
+		b.helping = false
+	}
+}

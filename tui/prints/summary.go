@@ -77,6 +77,8 @@ func (s *Screen) Status() string {
 		return st.Good.Render(s.workWords())
 	case n > 0:
 		return st.Text.Render(fmt.Sprintf("not working here; %s elsewhere", words.Plural(n, "worker", "workers")))
+	case s.editor.Open():
+		return st.Text.Render("nobody works on the queue: the print is made here at once, on " + words.Plural(s.slots, "core", "cores"))
 	case s.look.first:
 		return st.Text.Render(fmt.Sprintf("not working here; w works on %s", words.Plural(s.slots, "core", "cores")))
 	}
