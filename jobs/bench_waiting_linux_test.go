@@ -14,42 +14,31 @@ import (
 // print's plan and assembly included) and in processor time.
 func BenchmarkWaitingTiles(b *testing.B) {
 	const tiles, wait, slots = 100, 2 * time.Second, 2
-	for _, kind := range []string{"sqlite", "postgres"} {
-		b.Run(kind, func(b *testing.B) {
-			d := database{kind, "sqlite:" + filepath.Join(b.TempDir(), "queue.db")}
-			if kind == "postgres" {
-				d.where = freshPostgres(b, true)
-				if err := Migrate(b.Context(), d.where); err != nil {
-					b.Fatal(err)
-				}
+	benchEngines(b, func(b *testing.B, _ database, q *Queue) {
+		f := plain(b, 160)
+		for b.Loop() {
+			id, err := q.Add(b.Context(), f, AddOptions{Out: filepath.Join(b.TempDir(), "a.png"), Tile: 16})
+			if err != nil {
+				b.Fatal(err)
 			}
-			q := d.open(b)
-			q.time = usual
-			f := plain(b, 160)
-			for b.Loop() {
-				id, err := q.Add(b.Context(), f, AddOptions{Out: filepath.Join(b.TempDir(), "a.png"), Tile: 16})
-				if err != nil {
-					b.Fatal(err)
+			begun, used := time.Now(), processorTime(b)
+			err = q.Work(b.Context(), WorkOptions{Slots: slots, Drain: true, before: func(_ context.Context, k ticket) {
+				if k.Index >= 0 {
+					time.Sleep(wait)
 				}
-				begun, used := time.Now(), processorTime(b)
-				err = q.Work(b.Context(), WorkOptions{Slots: slots, Drain: true, before: func(_ context.Context, k ticket) {
-					if k.Index >= 0 {
-						time.Sleep(wait)
-					}
-				}})
-				if err != nil {
-					b.Fatal(err)
-				}
-				took, cpu := time.Since(begun), processorTime(b)-used
-				if p := show(b, q, id); p.State != Done || p.Tiles != tiles {
-					b.Fatalf("%+v", p)
-				}
-				ideal := tiles * wait / slots
-				b.ReportMetric(100*(took-ideal).Seconds()/ideal.Seconds(), "%clock")
-				b.ReportMetric(100*cpu.Seconds()/(slots*ideal).Seconds(), "%cpu")
+			}})
+			if err != nil {
+				b.Fatal(err)
 			}
-		})
-	}
+			took, cpu := time.Since(begun), processorTime(b)-used
+			if p := show(b, q, id); p.State != Done || p.Tiles != tiles {
+				b.Fatalf("%+v", p)
+			}
+			ideal := tiles * wait / slots
+			b.ReportMetric(100*(took-ideal).Seconds()/ideal.Seconds(), "%clock")
+			b.ReportMetric(100*cpu.Seconds()/(slots*ideal).Seconds(), "%cpu")
+		}
+	})
 }
 
 // processorTime is what this process has used.
